@@ -1,0 +1,5 @@
+"""``python -m stackdb``."""
+
+from stackdb.cli import main
+
+main()

@@ -1,0 +1,1 @@
+"""Dielectric models as pure numbers: relaxation, mixing rules, water, salt water, ice, air."""

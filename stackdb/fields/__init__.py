@@ -1,0 +1,1 @@
+"""Fields in layered stacks: the spectral kernel, discs, conductive films. Pure numbers."""

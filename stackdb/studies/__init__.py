@@ -1,0 +1,1 @@
+"""Answers about stacks: compose, compare, size, tolerance, change note."""

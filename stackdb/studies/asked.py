@@ -1,0 +1,114 @@
+"""What is asked of a stack: conditions, level, sizes and limits, from the call, else the stack file, else the defaults."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any, NamedTuple
+
+from stackdb.errors import InputError
+from stackdb.evidence.judge import Conditions
+
+if TYPE_CHECKING:
+    from stackdb.catalogue import Catalogue
+    from stackdb.stack.layers import Stack
+
+DEFAULT_FREQUENCY_HZ = 1e5
+DEFAULT_TEMPERATURE_C = 23.0
+DEFAULT_HUMIDITY_PCT = 50.0
+DEFAULT_LEVEL = 0.9
+FREQUENCY_RANGE_HZ = (1.0, 1e9)
+TEMPERATURE_RANGE_C = (-100.0, 300.0)
+
+
+class Sizes(NamedTuple):
+    """Pad and finger diameter, electrode pitch, clearance [m]; neighbours; layers below the electrode plane (text)."""
+
+    pad_m: float | None = None
+    finger_m: float | None = None
+    pitch_m: float | None = None
+    around: str | None = None
+    clearance_m: float | None = None
+    below: str | None = None
+
+    @property
+    def known(self) -> bool:
+        """Whether a field solution is possible."""
+        return self.pad_m is not None and self.finger_m is not None
+
+
+class Limits(NamedTuple):
+    """Greatest gap [m], least ratio to the reference [-], least signal [F]."""
+
+    max_gap_m: float | None = None
+    min_ratio: float | None = None
+    min_signal_farad: float | None = None
+
+
+class Asked(NamedTuple):
+    """Everything that is asked beside the layers."""
+
+    conditions: Conditions
+    level: float
+    sizes: Sizes
+    limits: Limits
+    source: str | None
+
+
+def _first(*values: Any) -> Any:
+    return next((v for v in values if v is not None), None)
+
+
+def _within(name: str, value: float, low: float, high: float, unit: str) -> float:
+    if not low <= value <= high:
+        raise InputError("out-of-range", f"{name} {value:g} {unit} is outside {low:g} to {high:g} {unit}")
+    return value
+
+
+def asked_of(
+    stack: Stack,
+    *,
+    frequency_hz: float | None = None,
+    temperature_c: float | None = None,
+    humidity_pct: float | None = None,
+    level: float | None = None,
+    source: str | None = None,
+    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
+    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
+) -> Asked:
+    """Merge what the call says with what the stack file says and the defaults; InputError for values out of range."""
+    conditions = Conditions(
+        _within("frequency", _first(frequency_hz, stack.frequency_hz, DEFAULT_FREQUENCY_HZ), *FREQUENCY_RANGE_HZ, "Hz"),
+        _within(
+            "temperature", _first(temperature_c, stack.temperature_c, DEFAULT_TEMPERATURE_C), *TEMPERATURE_RANGE_C, "C"
+        ),
+        _within("humidity", _first(humidity_pct, stack.humidity_pct, DEFAULT_HUMIDITY_PCT), 0.0, 100.0, "%"),
+    )
+    chosen_level = _within("level", _first(level, stack.level, DEFAULT_LEVEL), 0.5, 0.999, "")
+    return Asked(conditions, chosen_level, _merged_sizes(stack, sizes), _merged_limits(stack, limits), source)
+
+
+def _merged_sizes(stack: Stack, sizes: Sizes) -> Sizes:
+    return Sizes(
+        _first(sizes.pad_m, stack.pad_m),
+        _first(sizes.finger_m, stack.finger_m),
+        _first(sizes.pitch_m, stack.pitch_m),
+        _first(sizes.around, stack.around),
+        _first(sizes.clearance_m, stack.clearance_m),
+        _first(sizes.below, stack.below),
+    )
+
+
+def _merged_limits(stack: Stack, limits: Limits) -> Limits:
+    return Limits(
+        _first(limits.max_gap_m, stack.max_gap_m),
+        _first(limits.min_ratio, stack.min_ratio),
+        _first(limits.min_signal_farad, stack.min_signal_farad),
+    )
+
+
+def catalogue_of(catalogue: Catalogue | None) -> Catalogue:
+    """The catalogue given, else the one shipped."""
+    if catalogue is not None:
+        return catalogue
+    from stackdb.catalogue import open_catalogue
+
+    return open_catalogue()
