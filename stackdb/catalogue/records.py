@@ -15,7 +15,7 @@ class Material(NamedTuple):
     substance: str | None
     description: str | None
     conducts: str
-    index: float | None
+    refractive_index: float | None
     index_axis: str | None
     index_band: str | None
     index_source: str | None

@@ -102,7 +102,7 @@ TABLES = (
             Column("substance", refers="material"),
             Column("description"),
             Column("conducts", required=True, words=("no", "yes", "unknown")),
-            Column("index", "REAL", low=1.0, high=5.0),
+            Column("refractive_index", "REAL", low=1.0, high=5.0),
             Column("index_axis", words=("isotropic", "through", "in-plane", "unknown")),
             Column("index_band", words=("sodium", "long-wave")),
             Column("index_source", refers="source"),
@@ -115,7 +115,7 @@ TABLES = (
         ),
         ("key",),
         (
-            ('("index" IS NULL) = (index_source IS NULL)', "an index needs its source and a source its index"),
+            ('(refractive_index IS NULL) = (index_source IS NULL)', "an index needs its source and a source its index"),
             ("(uptake_pct IS NULL) = (uptake_source IS NULL)", "an uptake needs its source and a source its uptake"),
         ),
     ),

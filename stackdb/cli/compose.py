@@ -7,7 +7,8 @@ from typing import Any
 import click
 
 from stackdb.cli import options
-from stackdb.studies.asked import Limits, Sizes
+from stackdb.studies.asked import Limits
+from stackdb.touch.contact import Sizes
 
 
 @click.command("compose", epilog='Example: stackdb compose "soda-lime-glass 1.8mm / acrylic-oca 150um" --freq 250kHz')
@@ -25,6 +26,7 @@ from stackdb.studies.asked import Limits, Sizes
 @click.pass_context
 def command(
     ctx: click.Context,
+    /,
     *,
     words: tuple[str, ...],
     save: str | None,

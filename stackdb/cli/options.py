@@ -9,7 +9,8 @@ import click
 
 from stackdb import quantities
 from stackdb.errors import InputError
-from stackdb.studies.asked import Limits, Sizes
+from stackdb.studies.asked import Limits
+from stackdb.touch.contact import Sizes
 
 if TYPE_CHECKING:
     from stackdb.catalogue import Catalogue
@@ -18,7 +19,7 @@ if TYPE_CHECKING:
 Decorator = Callable[[Callable[..., Any]], Callable[..., Any]]
 
 
-class Quantity(click.ParamType):
+class Quantity(click.ParamType):  # type: ignore[type-arg,unused-ignore]  # generic only in newer releases of click
     """An option value with a unit, turned into an SI number by a parser of ``quantities``."""
 
     def __init__(self, name: str, parse: Callable[[str], Any]) -> None:

@@ -61,7 +61,7 @@ def water_permittivity(temperature_c: float, density_kg_m3: float | None = None)
     a = per_m3 * _DIPOLE**2 * g / (_EPS0_RELEASE * _BOLTZMANN * kelvin)
     b = per_m3 * _POLARISABILITY / (3.0 * _EPS0_RELEASE)
     root = sqrt(9.0 + 2.0 * a + 18.0 * b + a * a + 10.0 * a * b + 9.0 * b * b)
-    return (1.0 + a + 5.0 * b + root) / (4.0 - 4.0 * b)
+    return float((1.0 + a + 5.0 * b + root) / (4.0 - 4.0 * b))
 
 
 # Practical salinity scale 1978: UNESCO Tech. Pap. Mar. Sci. 44 (1983), algorithms 1 and 2 (coefficients recalled).
@@ -137,7 +137,7 @@ def air_permittivity(*, temperature_c: float, humidity_pct: float, pressure_hpa:
 def surface_tension(temperature_c: float) -> float:
     """Surface tension [N/m] of water at a temperature [degC]. IAPWS R1-76(2014) (coefficients recalled)."""
     tau = 1.0 - (temperature_c + KELVIN) / CRITICAL_K
-    return 0.2358 * tau**1.256 * (1.0 - 0.625 * tau)
+    return float(0.2358 * tau**1.256 * (1.0 - 0.625 * tau))
 
 
 def puddle_height(*, contact_angle_deg: float, temperature_c: float = 20.0) -> float:

@@ -87,7 +87,7 @@ def in_band(record: PermittivityRecord) -> bool:
 
 def _pairs(records: Sequence[PermittivityRecord], axis: str, least: float, greatest: float) -> tuple[Pair, ...]:
     """Slopes between neighbouring figures of one source that differ along ``axis`` alone."""
-    groups: dict[tuple[object, ...], list[tuple[float, float]]] = {}
+    groups: dict[tuple[str | float | None, ...], list[tuple[float, float]]] = {}
     for r in records:
         place = {"frequency": r.frequency_hz, "temperature": r.temperature_c, "humidity": state_humidity(r)}
         x = place.pop(axis)
@@ -153,9 +153,9 @@ def index_floor(material: Material) -> float:
 
     Maxwell's relation with every slower polarisation adding to the optical one (Kramers-Kronig; recalled).
     """
-    if material.index is None:
+    if material.refractive_index is None:
         return 1.0
-    return max(1.0, settings.INDEX_SHARE[material.index_band or "sodium"] * material.index**2)
+    return max(1.0, settings.INDEX_SHARE[material.index_band or "sodium"] * material.refractive_index**2)
 
 
 def why_unused(material: Material, record: PermittivityRecord, *, any_in_band: bool) -> str:

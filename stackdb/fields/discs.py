@@ -225,8 +225,9 @@ def plane_change(problem: Problem) -> float:
     """Change [F] by a grounded plane on the whole cover: the upper bound of any finger with that contact."""
     from scipy.special import j1
 
-    if problem.around == "driven":
-        return EPS0 * pi * problem.pad_m**2 / series_gap_limit(problem.cover).real
+    plate = EPS0 / series_gap_limit(problem.cover).real
+    if problem.around == "driven" and problem.clearance_m == 0.0:
+        return plate * pi * problem.pad_m**2
     k, weight = nodes(problem.pad_m + problem.clearance_m, _reach(problem))
     near = np.real(look(problem.cover, INFINITE, k).admittance)
     away = np.real(look(problem.cover, 1.0, k).admittance)
@@ -234,6 +235,9 @@ def plane_change(problem: Problem) -> float:
     if problem.around == "grounded" and problem.clearance_m == 0.0:
         return 2.0 * pi * EPS0 * problem.pad_m**2 * float(weight @ ((near - away) * j1(k * problem.pad_m) ** 2))
     far = problem.cover[0].mean.real + (problem.below[0].mean.real if problem.below else 1.0)
+    if problem.around == "driven":
+        system = gap.assemble(k, weight, near + down, far, problem.pad_m, problem.clearance_m)
+        return gap.uniform_charge(system, plate)
     if problem.around == "grounded":
         selves = [
             gap.self_capacitance(gap.assemble(k, weight, y + down, far, problem.pad_m, problem.clearance_m))
@@ -245,18 +249,10 @@ def plane_change(problem: Problem) -> float:
     one = np.eye(36, 1)[:, 0]
     with_plane, without = (2.0 * pi * float(np.linalg.solve(g, one)[0]) for g in grams)
     if problem.below_ending == "driven":
-        return EPS0 * 0.0 + _shielded_plane(problem, k, weight, near, down, far)
+        # The free plane floats between shield and ground; the pad carries what it lacks to the shield's potential.
+        up_gap, down_gap = series_gap_limit(problem.cover).real, series_gap_limit(problem.below).real
+        return with_plane * down_gap / (up_gap + down_gap)
     return with_plane - without
-
-
-def _shielded_plane(problem: Problem, k: Array, weight: Array, near: Array, down: Array, far: float) -> float:
-    """Pad alone over a driven shield, grounded plane above: the pad's charge from a uniform field it stands in."""
-    bessel = even_spherical_bessel(36, k * problem.pad_m)
-    matrix = _gram(bessel, 1.0 / (near + down), 1.0 / far, weight, problem.pad_m)
-    up, low = series_gap_limit(problem.cover).real, series_gap_limit(problem.below).real
-    lacking = 1.0 - up / (up + low)  # the free plane floats at this share of the shield's potential
-    one = np.eye(36, 1)[:, 0]
-    return 2.0 * pi * float(np.linalg.solve(matrix, one)[0]) * lacking
 
 
 def _checked(problem: Problem) -> Problem:
@@ -279,15 +275,20 @@ def _base_charge(problem: Problem) -> float:
     """Own charge [F] of a pad with all driven at unit potential and no finger: what the ground below holds."""
     if problem.below_ending != "ground":
         return 0.0
-    return EPS0 * pi * problem.pad_m**2 / series_gap_limit(problem.below).real
+    plate = EPS0 / series_gap_limit(problem.below).real
+    if problem.clearance_m == 0.0:
+        return plate * pi * problem.pad_m**2
+    kern = kernel(problem)
+    system = gap.assemble(
+        kern.k, kern.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m
+    )
+    return gap.uniform_charge(system, plate)
 
 
 def _selves(problem: Problem, found: Terminals, change: float) -> tuple[float | None, float | None]:
     if problem.around == "grounded" and problem.clearance_m == 0.0:
         return None, None
     if problem.around == "driven":
-        if problem.below_ending == "ground" and problem.clearance_m > 0.0:
-            return None, None
         base = _base_charge(problem)
         return base, base + change
     if problem.around == "alone" and problem.below_ending == "driven":

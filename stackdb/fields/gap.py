@@ -23,10 +23,14 @@ POINTS = 48
 
 
 class GapSystem(NamedTuple):
-    """Hankel transforms of the basis, shape (ORDER, nodes), and the energy matrix; row 0 falls by one across the gap."""
+    """Hankel transforms of the basis, shape (ORDER, nodes), the energy matrix, and each basis potential's area over 2 pi.
+
+    Row 0 falls from one at the pad to nothing at the neighbours; the others vanish at both edges.
+    """
 
     waves: Array
     energy: Array
+    areas: Array
 
 
 def _nodes(inner: float, width: float) -> tuple[Array, Array, Array]:
@@ -48,13 +52,13 @@ def _homogeneous(x: Array, r: Array, chebyshev: Array) -> Array:
     kernel = (2.0 / pi) * large * (np.where(m1 < 0.5, ellipkm1(m1), ellipk(1.0 - m1)) - ellipe(1.0 - m1))
     smooth = kernel + root / pi * np.log(np.where(same, 1.0, apart))
     width = (r.max() - r.min()) / (x.max() - x.min())  # dr/dx
-    limit = (r / pi) * (log(8.0) + np.log(r / width) - log(1.0)) - 2.0 * r / pi - (r / pi) * 0.0
-    smooth[same] = limit
+    smooth[same] = (r / pi) * (log(8.0) + np.log(r / width) - 2.0)
     weights = chebyshev[:ORDER] / POINTS
     regular = weights @ smooth @ weights.T
     moments = (chebyshev[:ORDER] * np.sqrt(r)) @ chebyshev.T / POINTS
     series = np.concatenate([[log(2.0)], 2.0 / np.arange(1, POINTS)])
-    return regular + (moments * series) @ moments.T / pi
+    total: Array = regular + (moments * series) @ moments.T / pi
+    return total
 
 
 def assemble(k: Array, weight: Array, admittance: Array, far: float, inner_m: float, width_m: float) -> GapSystem:
@@ -64,7 +68,14 @@ def assemble(k: Array, weight: Array, admittance: Array, far: float, inner_m: fl
     x, r, chebyshev = _nodes(inner_m, width_m)
     waves = (chebyshev[:ORDER] * r / POINTS) @ j1(np.outer(r, k))
     energy = (waves * (weight * (admittance - far))) @ waves.T + far * _homogeneous(x, r, chebyshev)
-    return GapSystem(waves, EPS0 * energy)
+    areas = (chebyshev[:ORDER] @ (0.5 * r * r)) / POINTS
+    return GapSystem(waves, EPS0 * energy, areas)
+
+
+def uniform_charge(system: GapSystem, capacitance_per_area: float) -> float:
+    """Charge [F] of the pad when it and its neighbours stand at unit potential against a plane of that capacitance [F/m2]."""
+    inner = np.linalg.solve(system.energy[1:, 1:], system.areas[1:])
+    return float(2.0 * pi * capacitance_per_area * (system.areas[0] - system.energy[0, 1:] @ inner))
 
 
 def self_capacitance(system: GapSystem) -> float:

@@ -19,9 +19,7 @@ class Exact(NamedTuple):
     def plus(self, other: Exact) -> Exact:
         """The exact sum."""
         power = min(self.power, other.power)
-        return Exact(
-            self.digits * 10 ** (self.power - power) + other.digits * 10 ** (other.power - power), power
-        )
+        return Exact(self.digits * 10 ** (self.power - power) + other.digits * 10 ** (other.power - power), power)
 
     def minus(self, other: Exact) -> Exact:
         """The exact difference."""

@@ -4,11 +4,26 @@ from __future__ import annotations
 
 import re
 from math import isfinite
-from typing import NamedTuple, NoReturn
+from typing import NoReturn
 
 from stackdb.errors import InputError
 from stackdb.quantities.exact import Exact, exact
 from stackdb.quantities.printing import shortened
+from stackdb.quantities.units import (
+    AREAL_MASS,
+    CAPACITANCE,
+    CONDUCTIVITY,
+    DENSITY,
+    FREQUENCY,
+    LENGTH,
+    ONE,
+    PERCENT,
+    PURE,
+    SHARE,
+    SHEET_RESISTANCE,
+    TEMPERATURE,
+    Quantity,
+)
 
 NUMBER = r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
 LONGEST_NUMBER = 400
@@ -17,64 +32,6 @@ _COMMA = re.compile(r"([0-9]),([0-9]+)")
 _NOT_FINITE = re.compile(r"[+-]?(?:nan|inf|infinity)", re.IGNORECASE)
 # Typographic minus signs mean what they look like.
 _MINUS = str.maketrans("\u2212\uff0d", "--")
-ONE = Exact(1, 0)
-PERCENT = Exact(1, -2)
-
-
-class Quantity(NamedTuple):
-    """What a number measures: its units with their size in SI, those to show, and two for an example."""
-
-    name: str
-    units: dict[str, Exact]
-    shown: str
-    examples: tuple[str, ...]
-
-
-def _powers(**units: int) -> dict[str, Exact]:
-    return {unit: Exact(1, power) for unit, power in units.items()}
-
-
-_MICRO = ("\u00b5", "\u03bc")  # the micro sign and the Greek letter look alike
-_OHM = ("\u03a9", "\u2126")  # so do the Greek letter and the ohm sign
-
-LENGTH = Quantity(
-    "a length",
-    _powers(nm=-9, um=-6, mm=-3, cm=-2, m=0)
-    | {sign + "m": Exact(1, -6) for sign in _MICRO}
-    | {"in": Exact(254, -4), "mil": Exact(254, -7), "thou": Exact(254, -7)},
-    "nm um mm cm m in mil thou",
-    ("um", "mm"),
-)
-FREQUENCY = Quantity("a frequency", _powers(Hz=0, kHz=3, MHz=6, GHz=9), "Hz kHz MHz GHz", ("kHz", "MHz"))
-TEMPERATURE = Quantity(
-    "a temperature", dict.fromkeys(("C", "°C", "\u2103", "K"), ONE), "C °C K", ("C",)
-)
-CAPACITANCE = Quantity("a capacitance", _powers(fF=-15, pF=-12, nF=-9), "fF pF nF", ("fF", "pF"))
-CONDUCTIVITY = Quantity(
-    "a conductivity",
-    {"S/m": ONE, "mS/m": Exact(1, -3), "uS/cm": Exact(1, -4), "mS/cm": Exact(1, -1)}
-    | {sign + "S/cm": Exact(1, -4) for sign in _MICRO},
-    "S/m mS/m uS/cm mS/cm",
-    ("S/m", "mS/cm"),
-)
-SHEET_RESISTANCE = Quantity(
-    "a sheet resistance",
-    {
-        prefix + ohm + per: Exact(1, power)
-        for prefix, power in (("", 0), ("k", 3), ("M", 6), ("G", 9))
-        for ohm in ("ohm", *_OHM)
-        for per in ("", "/sq", "/\u25a1")
-    },
-    "ohm/sq kohm/sq Mohm/sq",
-    ("ohm/sq", "kohm/sq"),
-)
-AREAL_MASS = Quantity("a mass per area", {"g/m2": Exact(1, -3), "g/m²": Exact(1, -3)}, "g/m2", ("g/m2",))
-DENSITY = Quantity("a density", {"g/cm3": Exact(1, 3), "g/cm³": Exact(1, 3)}, "g/cm3", ("g/cm3",))
-PURE = Quantity("a pure number", {}, "", ())
-SHARE = Quantity("a share", {"%": PERCENT}, "%", ("%",))
-TOLERANCE = Quantity(
-    "a tolerance", LENGTH.units | {"%": PERCENT}, f"{LENGTH.shown} %", ("um", "mm", "%")
-)
 
 
 def refuse(code: str, text: str, hint: str = "") -> NoReturn:
@@ -125,7 +82,7 @@ def split_number(text: str) -> tuple[str, str]:
     if len(number) > LONGEST_NUMBER:
         refuse("too-long", f"a number of {len(number)} characters, {number[:8]}...", "a few digits are enough")
     if rest and (rest[0] in "+-." or rest[0].isdecimal()):
-        refuse("not-a-number", f'"{shortened(text)}" is not one number')
+        refuse("not-a-number", f'"{shortened(text)}" is not one number', "write 1.8mm, or 1.7..1.9mm for a range")
     return number, rest
 
 
@@ -143,13 +100,14 @@ def _refuse_unit(number: str, unit: str, kind: Quantity, text: str) -> NoReturn:
     quoted = f'"{shortened(text)}"'
     brief = number if len(number) <= 20 else "1.8"
     if not kind.units:
+        brief = exact(number).times(PERCENT).text() if unit == "%" else brief
         refuse("unit-unwanted", f"{quoted} should be {kind.name}", f"write {brief}")
     if not unit:
         refuse("missing-unit", f"{quoted} has no unit", f"write {' or '.join(brief + u for u in kind.examples)}")
     right = [u for u in kind.units if u.casefold() == unit.casefold()]
     if right:
         hint = f"write {brief}{next((u for u in right if u.isascii()), right[0])}"
-        refuse("unit-case", f'{quoted} has its unit in the wrong case', hint)
+        refuse("unit-case", f"{quoted} has its unit in the wrong case", hint)
     first = _doubled(unit, kind.units) if len(unit) <= 24 else None
     if first:
         refuse("unit-twice", f"{quoted} has more than one unit", f"write {brief}{first}")
@@ -178,14 +136,14 @@ def as_float(number: Exact, text: str) -> float:
 def _at_least_zero(text: str, kind: Quantity, unit: str) -> float:
     value = as_float(read(text, kind)[0], text)
     if value < 0.0:
-        refuse("out-of-range", f'"{shortened(text)}" is below 0{unit}')
+        refuse("out-of-range", f'"{shortened(text)}" is below 0{unit}', "write 0 or more")
     return value
 
 
 def _above_zero(text: str, kind: Quantity, unit: str) -> float:
     value = as_float(read(text, kind)[0], text)
     if value <= 0.0:
-        refuse("out-of-range", f'"{shortened(text)}" is not above 0{unit}')
+        refuse("out-of-range", f'"{shortened(text)}" is not above 0{unit}', "write more than 0")
     return value
 
 

@@ -5,21 +5,10 @@ from __future__ import annotations
 from typing import NamedTuple
 
 from stackdb.quantities.exact import Exact
-from stackdb.quantities.parsing import (
-    LENGTH,
-    ONE,
-    PURE,
-    SHARE,
-    TOLERANCE,
-    Quantity,
-    as_float,
-    check_length,
-    read,
-    refuse,
-    split_number,
-)
+from stackdb.quantities.parsing import as_float, check_length, read, refuse, split_number
 from stackdb.quantities.printing import shortened
 from stackdb.quantities.span import Span
+from stackdb.quantities.units import LENGTH, ONE, PURE, SHARE, TOLERANCE, Quantity
 
 SIGNS = ("±", "+-")
 HIGHEST_PERMITTIVITY = Exact(1, 6)
@@ -115,15 +104,17 @@ def read_tolerance(text: str, thickness: Exact) -> Spread:
     low = _deviation(_borrowed(first, second, percent=True), thickness, TOLERANCE)
     high = _deviation(second, thickness, TOLERANCE)
     if low.digits > 0 or high.digits < 0:
-        refuse(
-            "tolerance-sign", f'tol="{shortened(text)}" does not run from minus to plus', "write tol=-0.10..+0.05mm"
-        )
+        refuse("tolerance-sign", f'tol="{shortened(text)}" does not run from minus to plus', "write tol=-0.10..+0.05mm")
     return _within_layer(Spread(thickness, thickness.plus(low), thickness.plus(high), True), f"tol={text}")
 
 
 def _within_layer(spread: Spread, text: str) -> Spread:
     if spread.low.digits < 0:
-        refuse("tolerance-too-large", f'the tolerance of "{shortened(text)}" is larger than the layer', "write less")
+        refuse(
+            "tolerance-too-large",
+            f'the tolerance of "{shortened(text)}" is larger than the layer',
+            "write a smaller one",
+        )
     if spread.high.minus(ONE).digits > 0:
         refuse("out-of-range", f'"{shortened(text)}" reaches above 1 m', "write a length from 0 to 1 m")
     return spread

@@ -110,12 +110,10 @@ class Stack(NamedTuple):
     constraints: tuple[Constraint, ...] = ()
 
 
-def _length(metres: Exact) -> str:
-    """An exact length [m] as text, in mm from 1 mm on, else in um."""
-    if not metres.digits:
-        return "0"
-    power, unit = (3, "mm") if abs(metres.value) >= 1e-3 else (6, "um")
-    return metres.shifted(power).text() + unit
+def _length(metres: Exact, like: float) -> str:
+    """An exact length [m] as text, in mm beside lengths of 1 mm and above, else in um."""
+    power, unit = (3, "mm") if abs(like) >= 1e-3 else (6, "um")
+    return metres.shifted(power).text() + unit if metres.digits else "0"
 
 
 def length_text(metres: float) -> str:
@@ -124,7 +122,7 @@ def length_text(metres: float) -> str:
     >>> length_text(0.0018), length_text(1.5e-4)
     ('1.8mm', '150um')
     """
-    return _length(exact_of(metres))
+    return _length(exact_of(metres), metres)
 
 
 def _spread_text(value: float, low: float, high: float) -> tuple[str, Exact, Exact]:
@@ -137,14 +135,14 @@ def _spread_text(value: float, low: float, high: float) -> tuple[str, Exact, Exa
 
 
 def _thickness_text(t: Thickness) -> str:
+    nominal = length_text(t.nominal_m)
     if t.low_m is None or t.high_m is None:
-        return length_text(t.nominal_m)
+        return nominal
     form, minus, plus = _spread_text(t.nominal_m, t.low_m, t.high_m)
-    if form == "half":
-        return f"{length_text(t.nominal_m)} tol={_length(plus)}"
     if form == "ends":
-        return f"{length_text(t.low_m)}..{length_text(t.high_m)}"
-    return f"{length_text(t.nominal_m)} tol=-{_length(minus)}..+{_length(plus)}"
+        return f"{_length(exact_of(t.low_m), t.nominal_m)}..{_length(exact_of(t.high_m), t.nominal_m)}"
+    below, above = _length(minus, t.nominal_m), _length(plus, t.nominal_m)
+    return f"{nominal} tol={above}" if form == "half" else f"{nominal} tol=-{below}..+{above}"
 
 
 def _eps_text(eps: Span) -> str:

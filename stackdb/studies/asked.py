@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Any, NamedTuple
 
 from stackdb.errors import InputError
 from stackdb.evidence.judge import Conditions
+from stackdb.touch.contact import Sizes
 
 if TYPE_CHECKING:
     from stackdb.catalogue import Catalogue
@@ -17,22 +18,6 @@ DEFAULT_HUMIDITY_PCT = 50.0
 DEFAULT_LEVEL = 0.9
 FREQUENCY_RANGE_HZ = (1.0, 1e9)
 TEMPERATURE_RANGE_C = (-100.0, 300.0)
-
-
-class Sizes(NamedTuple):
-    """Pad and finger diameter, electrode pitch, clearance [m]; neighbours; layers below the electrode plane (text)."""
-
-    pad_m: float | None = None
-    finger_m: float | None = None
-    pitch_m: float | None = None
-    around: str | None = None
-    clearance_m: float | None = None
-    below: str | None = None
-
-    @property
-    def known(self) -> bool:
-        """Whether a field solution is possible."""
-        return self.pad_m is not None and self.finger_m is not None
 
 
 class Limits(NamedTuple):

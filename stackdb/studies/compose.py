@@ -10,7 +10,8 @@ from stackdb.results import Edition, Limit, Result, Warned, at_least, at_most, s
 from stackdb.stack import firstorder
 from stackdb.stack.resolve import ResolvedLayer, ResolvedStack, resolve
 from stackdb.stack.stackfile import load
-from stackdb.studies.asked import Asked, Limits, Sizes, asked_of, catalogue_of
+from stackdb.studies.asked import Asked, Limits, asked_of, catalogue_of
+from stackdb.touch.contact import Sizes
 from stackdb.touch.conduction import conduction_verdict, forbids_sum
 from stackdb.touch.verdicts import Verdict, Verdicts, dielectric_verdict, validity_without_sizes
 
@@ -19,6 +20,7 @@ if TYPE_CHECKING:
 
     from stackdb.catalogue import Catalogue
     from stackdb.stack.layers import Stack
+    from stackdb.touch.contact import Field
 
 
 class MeasureNext(NamedTuple):
@@ -47,7 +49,7 @@ class ComposeResult(Result):
     measure_next: MeasureNext | None
     reference: str | None
     gap_ratio: Span | None
-    field: Any
+    field: Field | None
     verdicts: Verdicts
     limits: tuple[Limit, ...]
     warnings: tuple[Warned, ...]
@@ -299,7 +301,7 @@ def _composed(found: Resolved, ratio: Span | None, reference: Any, as_material: 
     gap = None if refused else firstorder.gap_span(stack, asked.level)
     following = None if refused else next_to_measure(stack)
     cover = (stack.layers[0].name, None) if refused else cover_gap(found.catalogue, stack, asked, as_material)
-    field, validity = _validity(stack, asked, shares, refused)
+    field, validity = _validity(found.catalogue, stack, asked, shares, refused)
     ratio = None if refused else ratio
     checked = [
         *at_most("max-gap", asked.limits.max_gap_m, gap.value if gap else None),
@@ -330,9 +332,11 @@ def _composed(found: Resolved, ratio: Span | None, reference: Any, as_material: 
     )
 
 
-def _validity(stack: ResolvedStack, asked: Asked, shares: tuple[float, ...], refused: bool) -> tuple[Any, Verdict]:
+def _validity(
+    catalogue: Catalogue, stack: ResolvedStack, asked: Asked, shares: tuple[float, ...], refused: bool
+) -> tuple[Field | None, Verdict]:
     if not asked.sizes.known or refused:
         return None, validity_without_sizes(stack, shares)
     from stackdb.touch.contact import field_and_validity
 
-    return field_and_validity(stack, asked.sizes, shares)
+    return field_and_validity(catalogue, stack, asked.sizes, shares)

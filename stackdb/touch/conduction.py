@@ -14,7 +14,6 @@ if TYPE_CHECKING:
 
 DEFAULT_BLUR_M = 5e-3  # common practice: about one electrode pitch; an editable default, never a limit
 HARMLESS_SHARE = 0.2  # a smear below this share of the allowed blur is harmless (common practice)
-CONDUCTOR_LIQUID = 1.0  # relaxation frequency over drive frequency from which a liquid is a conductor
 
 
 class Smear(NamedTuple):
@@ -71,14 +70,14 @@ def smear_of(stack: ResolvedStack, layer: ResolvedLayer) -> Smear | None:
     return Smear(sheet, area, length)
 
 
-def liquid_conducts(layer: ResolvedLayer) -> bool:
-    """Whether a liquid relaxes above the drive frequency, so that it conducts more than it polarises."""
-    if layer.material is None or layer.material.kind != "liquid" or not layer.conductivity_s_per_m:
+def carries(layer: ResolvedLayer) -> bool:
+    """Whether a layer relaxes above the drive frequency, so that it conducts more than it polarises."""
+    if not layer.conductivity_s_per_m:
         return False
     relaxes = relaxation_frequency(
         permittivity=layer.permittivity.value, conductivity_s_per_m=layer.conductivity_s_per_m
     )
-    return relaxes > CONDUCTOR_LIQUID * layer.frequency_hz
+    return relaxes > layer.frequency_hz
 
 
 def continuous_conductor(layer: ResolvedLayer) -> bool:
@@ -89,8 +88,8 @@ def continuous_conductor(layer: ResolvedLayer) -> bool:
 
 
 def forbids_sum(layer: ResolvedLayer) -> bool:
-    """Whether a layer must not be summed as a dielectric: a continuous conductor or a conducting liquid."""
-    return continuous_conductor(layer) or liquid_conducts(layer)
+    """Whether a layer must not be summed as a dielectric: a continuous conductor, or what conducts at the drive."""
+    return continuous_conductor(layer) or carries(layer)
 
 
 def format_sheet(ohm: float) -> str:
@@ -105,7 +104,7 @@ def format_sheet(ohm: float) -> str:
     return f"{ohm:.2g} ohm/sq"
 
 
-def _liquid(stack: ResolvedStack, layer: ResolvedLayer) -> Verdict:
+def _carrier(stack: ResolvedStack, layer: ResolvedLayer) -> Verdict:
     sigma = layer.conductivity_s_per_m or 0.0
     relaxes = relaxation_frequency(permittivity=layer.permittivity.value, conductivity_s_per_m=sigma)
     smear = smear_of(stack, layer)
@@ -142,8 +141,8 @@ def _judge(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float) -> Verdict
     if continuous_conductor(layer):
         text = f"layer {layer.number} ({layer.name}) is a continuous conductor above the sensor: it shields the touch"
         return Verdict(REFUSED, text)
-    if liquid_conducts(layer):
-        return _liquid(stack, layer)
+    if carries(layer):
+        return _carrier(stack, layer)
     film = _film(stack, layer, blur_m)
     if film is not None:
         return film
