@@ -28,8 +28,7 @@ from stackdb.quantities.units import (
 NUMBER = r"[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?"
 LONGEST_NUMBER = 400
 _NUMBER = re.compile(NUMBER)
-_COMMA = re.compile(r"([0-9]),([0-9]+)")
-_NOT_FINITE = re.compile(r"[+-]?(?:nan|inf|infinity)", re.IGNORECASE)
+_COMMA = r"([0-9]),([0-9]+)"
 # Typographic minus signs mean what they look like.
 _MINUS = str.maketrans("\u2212\uff0d", "--")
 
@@ -51,12 +50,12 @@ def _check_digits(text: str) -> None:
 
 
 def _check_comma(text: str) -> None:
-    found = _COMMA.search(text)
+    found = re.search(_COMMA, text) if "," in text else None
     if found is None:
         return
-    point = _COMMA.sub(r"\1.\2", text, count=1)
+    point = re.sub(_COMMA, r"\1.\2", text, count=1)
     # A comma before three digits may have parted thousands.
-    joined = _COMMA.sub(r"\1\2", text, count=1)
+    joined = re.sub(_COMMA, r"\1\2", text, count=1)
     whole = f" or {joined}" if len(found.group(2)) == 3 else ""
     refuse(
         "decimal-comma",
@@ -75,7 +74,7 @@ def split_number(text: str) -> tuple[str, str]:
     _check_comma(stripped)
     match = _NUMBER.match(stripped)
     if match is None:
-        if _NOT_FINITE.match(stripped):
+        if stripped.lstrip("+-").casefold().startswith(("nan", "inf")):
             refuse("not-finite", f'"{shortened(text)}" is not a finite number', "write a number")
         refuse("not-a-number", f'"{shortened(text)}" is not a number', "write a number such as 1.8")
     number, rest = match.group(), stripped[match.end() :].strip()

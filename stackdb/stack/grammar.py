@@ -26,10 +26,8 @@ MOST_STEPS = 100_000
 CHOICE_WORDS = ("or", "by", "none")
 ENDS = ("ground", "driven")
 EXAMPLE = 'write layers such as "soda-lime-glass 1.8mm / acrylic-oca 150um"'
-_PART = re.compile(r"(?:^|(?<=\s))/(?=\s|\Z)")
-_COMMENT = re.compile(r"(?:^|(?<=\s))#.*")
-_OR = re.compile(r"(?:^|(?<=\s))or(?=\s|\Z)", re.IGNORECASE)
-_BY = re.compile(rf"\sby\s+({NUMBER}(?:\s?[^\s\d]\S*)?)(?=\s|\Z)", re.IGNORECASE)
+_OR = r"(?:^|(?<=\s))or(?=\s|\Z)"
+_BY = rf"\sby\s+({NUMBER}(?:\s?[^\s\d]\S*)?)(?=\s|\Z)"
 # Blanks and minus signs as documents have them, each to the one that is typed; the byte order mark to a blank.
 _ALIKE = str.maketrans(
     dict.fromkeys("\t\u00a0\u1680\u202f\u205f\u3000", " ")
@@ -52,11 +50,20 @@ class Part(NamedTuple):
         return self.start + first, self.start + last
 
 
+def _marks(line: str, mark: str) -> Iterator[int]:
+    """Where a mark stands at the start of a line or after a blank."""
+    at = line.find(mark)
+    while at >= 0:
+        if at == 0 or line[at - 1] == " ":
+            yield at
+        at = line.find(mark, at + 1)
+
+
 def _lines(text: str) -> Iterator[Part]:
     """Lines without comments, with their place."""
     start = 0
     for raw in text.split("\n"):
-        yield Part(_COMMENT.sub("", raw.removesuffix("\r")), start)
+        yield Part(raw.removesuffix("\r")[: next(_marks(raw, "#"), None)], start)
         start += len(raw) + 1
 
 
@@ -66,8 +73,9 @@ def _parts(text: str) -> list[Part]:
     for line in _lines(text):
         if not line.text.strip(" "):
             continue
-        cuts = [0, *(x for m in _PART.finditer(line.text) for x in m.span()), len(line.text)]
-        for first, last in zip(cuts[::2], cuts[1::2], strict=True):
+        length = len(line.text)
+        cuts = [at for at in _marks(line.text, "/") if at + 1 == length or line.text[at + 1] == " "]
+        for first, last in zip([0, *(at + 1 for at in cuts)], [*cuts, length], strict=True):
             piece = line.text[first:last]
             if not piece.strip(" "):
                 _refuse_gap(line, first, last, len(found) + 1)
@@ -145,7 +153,7 @@ def _option(text: str) -> tuple[Layer | None, ...]:
         refuse("option-missing", 'a choice is missing beside "or"', "write a layer or none there")
     if text.strip().casefold() == "none":
         return (None,)
-    by = _BY.search(text)
+    by = re.search(_BY, text, re.IGNORECASE)
     if by is None:
         if "by" in text.casefold().split():
             refuse("step", '"by" has no step after it', "write 1.1..3.0mm by 0.1mm")
@@ -158,7 +166,7 @@ def _option(text: str) -> tuple[Layer | None, ...]:
 def _choice(text: str) -> Choice:
     found: list[Layer | None] = []
     start = 0
-    for mark in [*_OR.finditer(text), None]:
+    for mark in [*re.finditer(_OR, text, re.IGNORECASE), None]:
         end = mark.start() if mark else len(text)
         try:
             found += _option(text[start:end])

@@ -7,59 +7,54 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable
-from typing import NamedTuple, NoReturn
+from typing import NoReturn
 
 from stackdb.quantities.exact import Exact
 from stackdb.quantities.parsing import NUMBER, refuse
 from stackdb.quantities.printing import shortened
 from stackdb.quantities.uncertain import Spread, read_thickness, read_tolerance
+from stackdb.quantities.units import LENGTH
 from stackdb.stack.layers import Layer, Thickness
 from stackdb.stack.settings import SETTING_NAMES, SETTINGS, checked_name, split_settings
 from stackdb.stack.tokens import (
-    NUMBERISH,
-    UNIT_WORDS,
     Piece,
     check_characters,
     check_slash,
     joined,
     lacks_unit,
+    numberish,
     placed,
     refuse_at,
     unit_like,
     words_of,
 )
 
-_NOT_FINITE = re.compile(rf"[+-]?(?:nan|inf|infinity)(?:{UNIT_WORDS})?\Z", re.IGNORECASE)
-_NAME_WITH_DIGIT = re.compile(r"\d+[a-z]*-[a-z][\w-]*\Z", re.IGNORECASE)  # 2k-epoxy
-_THOUSANDS = re.compile(r"\d{3}(?!\d)")
-_GLUED = re.compile(rf"(.*[^\d.])({NUMBER}(?:{UNIT_WORDS}))\Z")
-
-
-class Head(NamedTuple):
-    """Name and thickness of a layer, as pieces."""
-
-    name: Piece
-    size: Piece
+_NAME_WITH_DIGIT = r"\d+[a-z]*-[a-z][\w-]*\Z"  # 2k-epoxy
 
 
 def _is_length(piece: Piece) -> bool:
-    return bool(NUMBERISH.match(piece.text)) and not _NAME_WITH_DIGIT.match(piece.text)
+    if not numberish(piece.text):
+        return False
+    return "-" not in piece.text or not re.match(_NAME_WITH_DIGIT, piece.text, re.IGNORECASE)
 
 
-def _head(text: str) -> Head:
+def _is_not_finite(word: str) -> bool:
+    folded = word.lstrip("+-").casefold()
+    return folded.startswith(("nan", "inf")) and (
+        folded in ("nan", "inf", "infinity") or any(folded in (f"nan{u}", f"inf{u}") for u in LENGTH.units)
+    )
+
+
+def _head(text: str) -> tuple[Piece, Piece]:
     """Name and thickness of what stands before the settings; InputError where either is missing or doubled."""
     pieces = joined(words_of(text), unit_like)
     for piece in pieces:
         check_slash(piece)
         if piece.text.endswith(","):
             refuse_at(piece, "character", f'"{shortened(piece.text)}" ends in a comma', 'write " / " between layers')
-        if _NOT_FINITE.match(piece.text):
-            refuse_at(
-                piece,
-                "not-finite",
-                f'"{shortened(piece.text)}" is not a finite thickness',
-                "write a number and a unit, 125um",
-            )
+        if _is_not_finite(piece.text):
+            hint = "write a number and a unit, 125um"
+            refuse_at(piece, "not-finite", f'"{shortened(piece.text)}" is not a finite thickness', hint)
     sizes = [i for i, piece in enumerate(pieces) if _is_length(piece)]
     if len(sizes) > 1:
         _refuse_second(pieces[sizes[0]], pieces[sizes[1]])
@@ -79,11 +74,11 @@ def _head(text: str) -> Head:
     if not named:
         placed(size, read_thickness)
         refuse_at(size, "no-name", f'"{shortened(size.text)}" has no material', "write a name beside the thickness")
-    return Head(Piece(" ".join(p.text for p in named), named[0].start, named[-1].end), size)
+    return (Piece(" ".join(p.text for p in named), named[0].start, named[-1].end), size)
 
 
 def _refuse_second(first: Piece, second: Piece) -> NoReturn:
-    if lacks_unit(first) and _THOUSANDS.match(second.text):
+    if lacks_unit(first) and re.match(r"\d{3}(?!\d)", second.text):
         whole = first.text + second.text
         refuse_at(first, "missing-unit", f'"{first.text}" has no unit', f"write {shortened(whole)} without a blank")
     for piece in (first, second):
@@ -105,7 +100,8 @@ def _refuse_sizeless(pieces: list[Piece], text: str) -> NoReturn:
     if unit is not None:
         refuse_at(unit, "no-thickness", f'the unit "{unit.text}" has no number before it', f"write 1{unit.text}")
     placed(whole, checked_name)
-    glued = _GLUED.match(name)
+    units = "|".join(sorted(LENGTH.units, key=len, reverse=True))
+    glued = re.match(rf"(.*[^\d.])({NUMBER}(?:{units}))\Z", name)
     hint = f"write {shortened(f'{glued[1]} {glued[2]}')}" if glued else f"write {shortened(name)} 125um"
     refuse_at(whole, "no-thickness", f'"{shortened(name)}" has no thickness', hint)
 
@@ -136,12 +132,12 @@ def read_layers(text: str, sizes: Callable[[Spread], list[Spread]]) -> tuple[Lay
     """The layers that a layer's text stands for; ``sizes`` turns the typed thickness into those to try."""
     check_characters(text)
     head_text, settings = split_settings(text)
-    head = _head(head_text)
-    name = placed(head.name, checked_name)
-    spread = placed(head.size, read_thickness)
+    named, size = _head(head_text)
+    name = placed(named, checked_name)
+    spread = placed(size, read_thickness)
     tol = settings.pop("tol", None)
-    values = {SETTINGS[key].field: placed(piece, SETTINGS[key].parse) for key, piece in settings.items()}
-    found = tuple(Layer(name, _toleranced(s, tol, head.size.text), **values) for s in sizes(spread))
+    values = {SETTINGS[key][0]: placed(piece, SETTINGS[key][1]) for key, piece in settings.items()}
+    found = tuple(Layer(name, _toleranced(s, tol, size.text), **values) for s in sizes(spread))
     _check_together(found[0])
     return found
 

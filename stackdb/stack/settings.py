@@ -4,14 +4,14 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable
-from typing import NamedTuple, NoReturn
+from typing import NoReturn
 
 from stackdb.quantities import Span, parse_conductivity, parse_number, parse_share, parse_sheet_resistance
 from stackdb.quantities.parsing import refuse
 from stackdb.quantities.printing import shortened
 from stackdb.quantities.uncertain import read_permittivity
 from stackdb.quantities.units import CONDUCTIVITY, PURE, SHARE, SHEET_RESISTANCE, TOLERANCE, Quantity
-from stackdb.stack.tokens import NUMBERISH, Piece, check_slash, is_mark, joined, refuse_at, unit_like, words_of
+from stackdb.stack.tokens import Piece, check_slash, is_mark, joined, numberish, refuse_at, unit_like, words_of
 
 RULES = (
     "maxwell-garnett",
@@ -24,7 +24,7 @@ RULES = (
     "parallel",
 )
 LONGEST_NAME = 80
-_SETTING = re.compile(r"(?:^|(?<=\s))([^\s=]*)\s?=\s?")
+_SETTING = r"(?:^|(?<=\s))([^\s=]*)\s?=\s?"
 _OTHER_WORDS = {
     "er": "eps", "epsr": "eps", "dk": "eps", "permittivity": "eps", "df": "tan", "loss": "tan", "tand": "tan",
     "tolerance": "tol", "resistance": "rs", "conductivity": "sigma", "rho": "sigma", "porosity": "fill", "mix": "rule",
@@ -46,7 +46,7 @@ def checked_name(text: str) -> str:
 
 
 def _host(text: str) -> str:
-    if any(NUMBERISH.match(word) for word in text.split()):
+    if any(numberish(word) for word in text.split()):
         refuse("setting-last", f'host="{shortened(text)}" holds a number', "thickness stands before the settings")
     return checked_name(text)
 
@@ -73,22 +73,16 @@ def _rule(text: str) -> str:
     return word
 
 
-class Setting(NamedTuple):
-    """A setting: the field of a Layer it fills, its parser, and what it measures (None for words)."""
-
-    field: str
-    parse: Callable[[str], Span | float | str]
-    kind: Quantity | None
-
-
-SETTINGS = {
-    "eps": Setting("eps", read_permittivity, PURE),
-    "tan": Setting("loss_tangent", _loss, PURE),
-    "sigma": Setting("conductivity_s_per_m", parse_conductivity, CONDUCTIVITY),
-    "rs": Setting("sheet_resistance_ohm", parse_sheet_resistance, SHEET_RESISTANCE),
-    "fill": Setting("fill", _fill, SHARE),
-    "host": Setting("host", _host, None),
-    "rule": Setting("rule", _rule, None),
+# The field of a Layer that a setting fills, its parser, and what it measures (None for words).
+Setting = tuple[str, Callable[[str], Span | float | str], Quantity | None]
+SETTINGS: dict[str, Setting] = {
+    "eps": ("eps", read_permittivity, PURE),
+    "tan": ("loss_tangent", _loss, PURE),
+    "sigma": ("conductivity_s_per_m", parse_conductivity, CONDUCTIVITY),
+    "rs": ("sheet_resistance_ohm", parse_sheet_resistance, SHEET_RESISTANCE),
+    "fill": ("fill", _fill, SHARE),
+    "host": ("host", _host, None),
+    "rule": ("rule", _rule, None),
 }
 SETTING_NAMES = ("tol", *SETTINGS)
 
@@ -110,10 +104,10 @@ def _value(key: str, text: str, start: int) -> Piece:
     words = words_of(text, start)
     if not words:
         refuse_at(Piece("", start, start), "setting-empty", f"{key}= has no value", f"write a value after {key}=")
-    kind = TOLERANCE if key == "tol" else SETTINGS[key].kind
+    kind = TOLERANCE if key == "tol" else SETTINGS[key][2]
     if kind is None:
         return Piece(" ".join(w.text for w in words), words[0].start, words[-1].end)
-    if kind not in (CONDUCTIVITY, SHEET_RESISTANCE):
+    if kind is not CONDUCTIVITY and kind is not SHEET_RESISTANCE:
         for word in words:
             check_slash(word)
     takes = (lambda _: True) if kind.units else unit_like
@@ -130,9 +124,9 @@ def _value(key: str, text: str, start: int) -> Piece:
 
 def split_settings(text: str) -> tuple[str, dict[str, Piece]]:
     """What stands before the settings, and the settings as typed."""
-    marks = list(_SETTING.finditer(text))
-    if not marks:
+    if "=" not in text:
         return text, {}
+    marks = list(re.finditer(_SETTING, text))
     found: dict[str, Piece] = {}
     ends = [m.start() for m in marks[1:]] + [len(text)]
     for mark, end in zip(marks, ends, strict=True):

@@ -17,7 +17,7 @@ if TYPE_CHECKING:
 STANDARD_INPUT = "-"
 SUFFIX = ".toml"
 LARGEST_FILE = 2_000_000
-_TOML_LINE = re.compile(r"""\s*(?:[\w"'.-]+\s*=|\[)""")
+_TOML_LINE = r"""\s*(?:[\w"'.-]+\s*=|\[)"""
 
 
 def _shown(path: str) -> str:
@@ -56,7 +56,7 @@ def _read(path: str) -> str:
 def _is_toml(text: str) -> bool:
     """Whether the first line that says something is a key or a table, rather than a layer."""
     lines = (line for line in text.split("\n") if line.strip() and not line.lstrip().startswith("#"))
-    return bool(_TOML_LINE.match(next(lines, "")))
+    return bool(re.match(_TOML_LINE, next(lines, "")))
 
 
 def read_stack(path: str | os.PathLike[str]) -> Stack:

@@ -8,17 +8,12 @@ from typing import Any, NamedTuple, NoReturn
 
 from stackdb.errors import InputError
 from stackdb.quantities.printing import escaped, shortened, visible
-from stackdb.quantities.units import LENGTH, TOLERANCE
+from stackdb.quantities.units import TOLERANCE
 
 _FOLDED_UNITS = {unit.casefold() for unit in TOLERANCE.units}
-UNIT_WORDS = "|".join(sorted(LENGTH.units, key=len, reverse=True))
 _WORD = re.compile(r"\S+")
-_JOINT = r"(?:±|\+-|\.\.)"
-_ENDS_OPEN = re.compile(rf".*{_JOINT}\Z")
-_STARTS_OPEN = re.compile(_JOINT)
-ENDS_BARE = re.compile(rf"(?:.*{_JOINT})?[+-]?[\d.,]*\d\.?(?:[eE][+-]?\d+)?\Z")
-NUMBERISH = re.compile(r"(?:[+-]{0,2}|±|\.\.)[.,]?\d")
-_PLAIN = re.compile(r"[A-Za-z0-9 \-_.+'&=/%,]*\Z")
+_JOINTS = ("±", "+-", "..")
+_PLAIN = frozenset("ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789 -_.+'&=/%,")
 _OTHER = "±°Ω\u2126\u00b5\u03bc²³\u25a1\u2103，．"
 _NAMES = {'"': "a quotation mark"}
 _HINTS = {
@@ -55,7 +50,7 @@ def placed(piece: Piece, parse: Callable[[str], Any]) -> Any:
 
 def check_characters(text: str) -> None:
     """InputError for a character that no layer holds: control, direction-changing, brackets, quotes."""
-    if _PLAIN.match(text):
+    if _PLAIN.issuperset(text):
         return
     for word in _WORD.finditer(text) if text.isprintable() else re.finditer(r"[^ ]+", text):
         piece = Piece(word.group(), word.start(), word.end())
@@ -70,7 +65,7 @@ def check_characters(text: str) -> None:
 
 
 def _allowed(c: str) -> bool:
-    return bool(_PLAIN.match(c)) or c in _OTHER or c.isalpha() or c.isdecimal() or is_mark(c)
+    return c in _PLAIN or c in _OTHER or c.isalpha() or c.isdecimal() or is_mark(c)
 
 
 def is_mark(c: str) -> bool:
@@ -85,15 +80,29 @@ def words_of(text: str, start: int = 0) -> list[Piece]:
     return [Piece(m.group(), start + m.start(), start + m.end()) for m in _WORD.finditer(text)]
 
 
+def numberish(text: str) -> bool:
+    """Whether a word begins as a number does."""
+    return text.lstrip("+-±.,")[:1].isdecimal()
+
+
+def _ends_bare(text: str) -> bool:
+    """Whether a word ends in a number that has no unit."""
+    if not (text[-1].isdecimal() or text[-1] == "."):
+        return False
+    for joint in _JOINTS:
+        text = text.rpartition(joint)[2]
+    return all(c.isdecimal() or c in ".,eE+-" for c in text)
+
+
 def joined(words: list[Piece], unit: Callable[[str], bool]) -> list[Piece]:
     """Words with number, ± and unit drawn together: ``1.8 ± 0.1 mm`` becomes one piece."""
     found: list[Piece] = []
     for word in words:
         last = found[-1] if found else None
-        if last and NUMBERISH.match(last.text) and (
-            _ENDS_OPEN.match(last.text)
-            or _STARTS_OPEN.match(word.text)
-            or (ENDS_BARE.match(last.text) and unit(word.text))
+        if last and numberish(last.text) and (
+            last.text.endswith(_JOINTS)
+            or word.text.startswith(_JOINTS)
+            or (_ends_bare(last.text) and unit(word.text))
         ):  # fmt: skip
             found[-1] = Piece(last.text + word.text, last.start, word.end)
         else:
@@ -118,4 +127,4 @@ def check_slash(piece: Piece) -> None:
 
 def lacks_unit(piece: Piece) -> bool:
     """Whether a piece is a number other than 0 without a unit."""
-    return bool(ENDS_BARE.match(piece.text)) and any(c.isdecimal() and c != "0" for c in piece.text)
+    return _ends_bare(piece.text) and any(c.isdecimal() and c != "0" for c in piece.text)
