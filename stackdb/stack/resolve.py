@@ -100,7 +100,8 @@ class ResolvedStack(NamedTuple):
 
 def _rule_limits(record: ThicknessRecord, nominal_m: float) -> tuple[float, float] | None:
     """Lower and upper limit [m] of a thickness by a market record, or None where it states no tolerance."""
-    if record.minus_m is None and record.minus_share is None:
+    sides = ((record.minus_m, record.minus_share), (record.plus_m, record.plus_share))
+    if any(length is None and share is None for length, share in sides):
         return None
     minus = (record.minus_m or 0.0) + (record.minus_share or 0.0) * nominal_m
     plus = (record.plus_m or 0.0) + (record.plus_share or 0.0) * nominal_m

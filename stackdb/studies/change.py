@@ -22,6 +22,8 @@ if TYPE_CHECKING:
     from stackdb.stack.resolve import ResolvedLayer
 
 FAR_DECADES = 1.0
+MISLEADS = 0.10  # a figure this far off as printed is worth a line
+MOST_REJECTED = 3
 RETEST = (
     "touch with each glove and wet case of the requirement, on the assembled panel with its bezel",
     "signal and noise against the old stack with the same test bar, and re-tune thresholds",
@@ -70,25 +72,24 @@ def _changed(compared: CompareResult) -> list[ResolvedLayer]:
 
 
 def _far_records(layer: ResolvedLayer, frequency_hz: float) -> list[Rejected]:
-    """Figures recorded far from the drive frequency: shown as they stand in the source, with what they become here."""
+    """Used figures recorded more than a decade away that would mislead as printed: the worst first, few at the most."""
     from math import log10
 
     found = layer.evidence.recommended if layer.evidence else None
     rows = []
     for j in found.judged if found else ():
         f, value, moved = j.record.frequency_hz, j.record.value, j.moved_value
-        if value is None or (f is not None and abs(log10(f / frequency_hz)) <= FAR_DECADES):
+        if not j.used or f is None or value is None or moved is None or abs(log10(f / frequency_hz)) <= FAR_DECADES:
             continue
-        if j.used and f is not None and moved is not None:
-            error = 100.0 * (value / moved - 1.0)
+        error = value / moved - 1.0
+        if abs(error) >= MISLEADS:
             text = (
                 f"{value:g} from {j.record.source} is a {format_frequency(f)} figure: at {format_frequency(frequency_hz)} it"
-                f" becomes {moved:.3g}; as printed the gap share would be {error:+.0f} % off"
+                f" becomes {moved:.3g}; as printed the layer's share of signal would be {100 * error:+.0f} % off"
             )
-            rows.append(Rejected(layer.number, value, text))
-        elif not j.used:
-            rows.append(Rejected(layer.number, value, f"{value:g} from {j.record.source}: {j.why_not}"))
-    return rows
+            rows.append((abs(error), Rejected(layer.number, value, text)))
+    rows.sort(key=lambda row: -row[0])
+    return [rejected for _, rejected in rows[:MOST_REJECTED]]
 
 
 def _offered(layer: ResolvedLayer, offered: float, frequency_hz: float) -> Rejected:

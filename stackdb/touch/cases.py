@@ -80,11 +80,17 @@ def default_cases(catalogue: Catalogue, cover: ResolvedStack) -> tuple[Case, ...
     """All named cases: hands first, bare before gloves, then by their gap; those refused last."""
     cases = []
     for row in catalogue.touch_cases():
-        try:
-            cases.append(named_case(catalogue, row.key, cover))
-        except InputError:
-            continue  # a film that does not exist at the conditions asked, such as ice above freezing
+        case = named_case(catalogue, row.key, cover)
+        if not any(_outside_model(catalogue, x) for x in case.layers):
+            cases.append(case)
     return tuple(sorted(cases, key=lambda c: (c.group != "hand", c.refused is not None, _gap(c))))
+
+
+def _outside_model(catalogue: Catalogue, layer: ResolvedLayer) -> bool:
+    """Whether a liquid or ice is asked where its recorded model does not reach, such as ice above freezing."""
+    if layer.material is None or layer.material.kind != "liquid" or layer.evidence is None:
+        return False
+    return layer.evidence.recommended is not None and bool(catalogue.dispersions(layer.material.key))
 
 
 def _gap(case: Case) -> float:
