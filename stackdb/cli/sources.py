@@ -7,7 +7,7 @@ import click
 from stackdb.cli import options
 
 
-@click.command("sources", epilog="Example: stackdb sources us-plastic-533")
+@click.command("sources", epilog="Example: stackdb sources iapws-r8-97")
 @click.argument("key", required=False)
 @click.option("--catalogue", "catalogue_path", metavar="FILE", help="A catalogue file in place of the one shipped.")
 @options.output_options

@@ -121,10 +121,10 @@ def test_a_stack_file_a_pipe_and_save(stackdb, tmp_path):
 
 
 def test_source_lets_one_source_alone_speak(stackdb):
-    body = json.loads(stackdb("compose", "pmma-extruded 2mm", "--source", "us-plastic-corp", "--json").out)
+    body = json.loads(stackdb("compose", "pmma-extruded 2mm", "--source", "us-plastic-extruded", "--json").out)
     keys = {key for layer in body["layers"] for key in layer["sources"]}
     if "error" not in body:
-        assert keys == {"us-plastic-corp"}
+        assert keys == {"us-plastic-extruded"}
 
 
 def test_sizes_bring_the_field_solution(stackdb):
