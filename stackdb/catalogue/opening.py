@@ -137,6 +137,7 @@ class Catalogue:
             f"SELECT material, '{table}' AS place FROM {table} WHERE source = ?1"
             for table in ("permittivity", "thickness", "conductivity", "dispersion")
         )
+        parts += " UNION ALL SELECT material, 'quoted' FROM permittivity WHERE quoted_in = ?1"
         parts += " UNION ALL SELECT key, 'index' FROM material WHERE index_source = ?1"
         parts += " UNION ALL SELECT key, 'uptake' FROM material WHERE uptake_source = ?1"
         parts += " UNION ALL SELECT key, 'touch_case' FROM touch_case WHERE source = ?1"

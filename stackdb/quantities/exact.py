@@ -69,7 +69,8 @@ def exact(number: str) -> Exact:
     whole, _, part = mantissa.partition(".")
     digits, shift = int(whole + part), int(exponent or 0)
     if digits and abs(shift) > HIGHEST_POWER:
-        raise InputError("not-finite", f'"{number[:40]}" is beyond what a number can be')
+        text = f'"{number[:40]}" is beyond what a number can be'
+        raise InputError("not-finite", text, "write fewer digits or a smaller exponent")
     return Exact(digits, shift - len(part) if digits else 0)
 
 

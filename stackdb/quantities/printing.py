@@ -98,6 +98,12 @@ def shortened(text: str, most: int = 40) -> str:
     >>> shortened("9" * 5000, 8)
     '99999999... (5000 characters)'
     """
-    if len(text) <= most:
-        return printable(text)
-    return f"{printable(text[:most])}... ({len(text)} characters)"
+    shown = printable(text[: most + 1])
+    if len(shown) <= most:
+        return shown
+    kept = ""
+    for c in text[:most]:
+        kept += printable(c)
+        if len(kept) >= most:
+            break
+    return f"{kept}... ({len(text)} characters)"

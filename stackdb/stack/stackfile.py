@@ -141,6 +141,8 @@ def _write_and_move(data: bytes, fresh: str, target: str) -> None:
             handle.write(data)
             handle.flush()
             os.fsync(handle.fileno())
+            if os.path.exists(target):  # noqa: PTH110 - pathlib costs start-up time
+                os.chmod(fresh, os.stat(target).st_mode & 0o777)  # noqa: PTH101, PTH116 - as above
             os.replace(fresh, target)
         except BaseException:
             os.unlink(fresh)  # noqa: PTH108 - pathlib costs start-up time
