@@ -17,7 +17,7 @@ import numpy as np
 from stackdb.errors import InputError
 from stackdb.fields import gap
 from stackdb.fields.kernel import INFINITE, FieldLayer, look, series_gap_limit
-from stackdb.fields.quadrature import even_spherical_bessel, nodes
+from stackdb.fields.quadrature import Grid, grid
 from stackdb.quantities import EPS0
 
 if TYPE_CHECKING:
@@ -74,8 +74,7 @@ class Problem(NamedTuple):
 class Kernel(NamedTuple):
     """The kernel at the nodes: admittance at the electrode plane, impedances, transfer, and their limits at large k."""
 
-    k: Array
-    weight: Array
+    grid: Grid
     admittance: Array
     admittance_far: float
     pad: Array
@@ -122,7 +121,8 @@ def _ending(word: str) -> float:
 def kernel(problem: Problem) -> Kernel:
     """The kernel of a problem at its quadrature nodes; neighbours set the electrode plane or leave it free."""
     radius = max(problem.pad_m, problem.finger_m, problem.pad_m + problem.clearance_m)
-    k, weight = nodes(radius, _reach(problem))
+    nodes = grid(radius, _reach(problem))
+    k = nodes.k
     up = look(problem.cover, 1.0, k)
     down = look(problem.below, _ending(problem.below_ending), k)
     admittance = np.real(up.admittance + down.admittance)
@@ -132,8 +132,7 @@ def kernel(problem: Problem) -> Kernel:
     near_down = problem.below[0].mean.real if problem.below else 1.0
     transfer = np.real(up.transfer)
     return Kernel(
-        k=k,
-        weight=weight,
+        grid=nodes,
         admittance=admittance,
         admittance_far=near_up + near_down,
         pad=1.0 / admittance,
@@ -154,10 +153,10 @@ def _gram(bessel: Array, values: Array, far: float, weight: Array, radius: float
 
 
 def _alone(problem: Problem, kern: Kernel, count: int) -> Terminals:
-    pad, finger = (even_spherical_bessel(count, kern.k * r) for r in (problem.pad_m, problem.finger_m))
-    p11 = _gram(pad, kern.pad, kern.pad_far, kern.weight, problem.pad_m)
-    p22 = _gram(finger, kern.finger, kern.finger_far, kern.weight, problem.finger_m)
-    p12 = (pad * (kern.weight * kern.mutual)) @ finger.T / EPS0
+    pad, finger = (kern.grid.waves(count, r) for r in (problem.pad_m, problem.finger_m))
+    p11 = _gram(pad, kern.pad, kern.pad_far, kern.grid.weight, problem.pad_m)
+    p22 = _gram(finger, kern.finger, kern.finger_far, kern.grid.weight, problem.finger_m)
+    p12 = (pad * (kern.grid.weight * kern.mutual)) @ finger.T / EPS0
     whole = np.block([[p11, p12], [p12.T, p22]])
     right = np.zeros((2 * count, 2))
     right[0, 0] = right[count, 1] = 1.0
@@ -170,10 +169,10 @@ def _touching(problem: Problem, kern: Kernel, count: int) -> Terminals:
     """All of the electrode plane at given potentials: the finger's charge is the only unknown; c11 is then a change."""
     from scipy.special import j1
 
-    finger = even_spherical_bessel(count, kern.k * problem.finger_m)
-    matrix = _gram(finger, kern.finger, kern.finger_far, kern.weight, problem.finger_m)
-    pad = problem.pad_m * j1(kern.k * problem.pad_m)
-    reach = finger @ (kern.weight * kern.transfer * pad)
+    finger = kern.grid.waves(count, problem.finger_m)
+    matrix = _gram(finger, kern.finger, kern.finger_far, kern.grid.weight, problem.finger_m)
+    pad = problem.pad_m * j1(kern.grid.k * problem.pad_m)
+    reach = finger @ (kern.grid.weight * kern.transfer * pad)
     right = np.column_stack([reach, np.eye(count, 1)[:, 0]])
     solved = np.linalg.solve(matrix, right)
     return Terminals(
@@ -186,10 +185,10 @@ def _touching(problem: Problem, kern: Kernel, count: int) -> Terminals:
 
 def _with_gap(problem: Problem, kern: Kernel, count: int) -> Terminals:
     """Neighbours beyond a clearance: the field across the annular gap is unknown beside the finger's charge."""
-    system = gap.assemble(kern.k, kern.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m)
-    finger = even_spherical_bessel(count, kern.k * problem.finger_m)
-    p22 = _gram(finger, kern.finger, kern.finger_far, kern.weight, problem.finger_m)
-    link = (system.waves * (kern.weight * kern.transfer)) @ finger.T
+    system = gap.assemble(kern.grid.k, kern.grid.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m)
+    finger = kern.grid.waves(count, problem.finger_m)
+    p22 = _gram(finger, kern.finger, kern.finger_far, kern.grid.weight, problem.finger_m)
+    link = (system.waves * (kern.grid.weight * kern.transfer)) @ finger.T
     return Terminals(*gap.terminals(system, link, p22))
 
 
@@ -228,7 +227,8 @@ def plane_change(problem: Problem) -> float:
     plate = EPS0 / series_gap_limit(problem.cover).real
     if problem.around == "driven" and problem.clearance_m == 0.0:
         return plate * pi * problem.pad_m**2
-    k, weight = nodes(problem.pad_m + problem.clearance_m, _reach(problem))
+    nodes = grid(problem.pad_m + problem.clearance_m, _reach(problem))
+    k, weight = nodes.k, nodes.weight
     near = np.real(look(problem.cover, INFINITE, k).admittance)
     away = np.real(look(problem.cover, 1.0, k).admittance)
     down = np.real(look(problem.below, _ending(problem.below_ending), k).admittance)
@@ -244,7 +244,7 @@ def plane_change(problem: Problem) -> float:
             for y in (near, away)
         ]
         return selves[0] - selves[1]
-    bessel = even_spherical_bessel(36, k * problem.pad_m)
+    bessel = nodes.waves(36, problem.pad_m)
     grams = [_gram(bessel, 1.0 / (y + down), 1.0 / far, weight, problem.pad_m) for y in (near, away)]
     one = np.eye(36, 1)[:, 0]
     with_plane, without = (2.0 * pi * float(np.linalg.solve(g, one)[0]) for g in grams)
@@ -280,7 +280,7 @@ def _base_charge(problem: Problem) -> float:
         return plate * pi * problem.pad_m**2
     kern = kernel(problem)
     system = gap.assemble(
-        kern.k, kern.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m
+        kern.grid.k, kern.grid.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m
     )
     return gap.uniform_charge(system, plate)
 

@@ -15,7 +15,7 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 
 from stackdb.fields.kernel import INFINITE, FieldLayer, Sheet, look, series_gap_limit, sheet_term
-from stackdb.fields.quadrature import nodes
+from stackdb.fields.quadrature import grid
 from stackdb.quantities import EPS0
 
 if TYPE_CHECKING:
@@ -108,7 +108,8 @@ def apparent_touch(
     under = tuple(reversed(tuple(cover)[film_under:]))
     above = tuple(reversed(tuple(cover)[:film_under]))
     reach = 20.0 / min(x.thickness_m for x in (*cover,) if x.thickness_m > 0.0)
-    k, weight = nodes(a, reach)
+    nodes = grid(a, reach)
+    k, weight = nodes.k, nodes.weight
     air = look(above, 1.0, k).admittance
     with_film = look(under, air + sheet_term(film, k), k).admittance
     without = look(under, air, k).admittance
@@ -133,7 +134,8 @@ def touch_through(
     if not above:
         return 0j
     reach = 20.0 / min(x.thickness_m for x in (*cover,) if x.thickness_m > 0.0)
-    k, weight = nodes(a, reach)
+    nodes = grid(a, reach)
+    k, weight = nodes.k, nodes.weight
     waves = weight * j1(k * a) ** 2
     sheet = sheet_term(film, k)
     air, plane = look(above, 1.0, k).admittance, look(above, INFINITE, k).admittance

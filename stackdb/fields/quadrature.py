@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from functools import lru_cache
 from math import ceil, log2
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, NamedTuple
 
 import numpy as np
 
@@ -30,11 +30,32 @@ def _unit_nodes(doublings: int) -> tuple[Array, Array]:
     return nodes, weights
 
 
-def nodes(largest_radius_m: float, reach_per_m: float) -> tuple[Array, Array]:
-    """Nodes k [1/m] and weights up to at least ``reach_per_m`` [1/m], fit for Bessel functions up to a radius [m]."""
+class Grid(NamedTuple):
+    """Nodes in wavenumber: ``k`` [1/m] and weights [1/m], fit for Bessel functions up to a radius [m]."""
+
+    doublings: int
+    radius_m: float
+    k: Array
+    weight: Array
+
+    def waves(self, count: int, radius_m: float) -> Array:
+        """j_0, j_2, .. of k times a disc's radius [m], shape (count, nodes); remembered for discs of like size."""
+        return _disc_waves(count, self.doublings, radius_m / self.radius_m)
+
+
+def grid(largest_radius_m: float, reach_per_m: float) -> Grid:
+    """Nodes up to at least ``reach_per_m`` [1/m], fit for Bessel functions up to a radius [m]."""
     panels = max(8.0, reach_per_m * largest_radius_m / PANEL)
-    x, w = _unit_nodes(ceil(log2(panels)))
-    return x / largest_radius_m, w / largest_radius_m
+    doublings = ceil(log2(panels))
+    x, w = _unit_nodes(doublings)
+    return Grid(doublings, largest_radius_m, x / largest_radius_m, w / largest_radius_m)
+
+
+@lru_cache(maxsize=48)
+def _disc_waves(count: int, doublings: int, ratio: float) -> Array:
+    found = even_spherical_bessel(count, _unit_nodes(doublings)[0] * ratio)
+    found.flags.writeable = False
+    return found
 
 
 def even_spherical_bessel(count: int, x: Array) -> Array:
