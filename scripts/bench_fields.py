@@ -11,7 +11,7 @@ import warnings
 # one thread for both sides: on small matrices more threads only wait for each other
 os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
 
-import numpy as np  # noqa: E402
+import numpy as np
 
 EPS0 = 8.8541878188e-12
 PAD_M, FINGER_M = 4e-3, 4e-3
@@ -118,7 +118,10 @@ def field_vs_fem():
 if __name__ == "__main__":
     for size in (1e-4, 5e-5, 2e-5, 1e-5):
         began = time.perf_counter()
-        print("finest %g m: off by %.2e, %.2f s" % (size, finite_elements(size) / ours().change_farad - 1.0, time.perf_counter() - began))
+        print(
+            "finest %g m: off by %.2e, %.2f s"
+            % (size, finite_elements(size) / ours().change_farad - 1.0, time.perf_counter() - began)
+        )
     began = time.perf_counter()
     ours()
     print("one warm solve %.2f ms" % (1e3 * (time.perf_counter() - began)))

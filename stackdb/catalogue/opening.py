@@ -211,7 +211,12 @@ class Catalogue:
 
 
 def open_catalogue(path: str | None = None) -> Catalogue:
-    """Open the catalogue shipped, or the file named, read only.
+    """Open the catalogue shipped, or the file named, read only; FileError when it cannot be used."""
+    return Catalogue(*connect(path))
+
+
+def connect(path: str | None = None) -> tuple[sqlite3.Connection, str]:
+    """Connect read only to the catalogue shipped or to the file named.
 
     Raises FileError, naming the file, when it is missing, not a catalogue, damaged, or from a newer version; and when SQLite
     is older than 3.37.
@@ -228,7 +233,7 @@ def open_catalogue(path: str | None = None) -> Catalogue:
         ) from None
     if row is None or row[0] > SCHEMA_VERSION:
         raise FileError("catalogue-newer", f"{where} is from a newer version", "update stackdb")
-    return Catalogue(database, where)
+    return database, where
 
 
 def _quoted(path: str) -> str:

@@ -115,7 +115,7 @@ TABLES = (
         ),
         ("key",),
         (
-            ('(refractive_index IS NULL) = (index_source IS NULL)', "an index needs its source and a source its index"),
+            ("(refractive_index IS NULL) = (index_source IS NULL)", "an index needs its source and a source its index"),
             ("(uptake_pct IS NULL) = (uptake_source IS NULL)", "an uptake needs its source and a source its uptake"),
         ),
     ),

@@ -36,11 +36,17 @@ def _target(**given: float | None) -> Target:
 @click.command("size", epilog='Example: stackdb size "pmma-extruded 3mm / acrylic-oca 175um" --layer 1 --gap 0.48mm')
 @options.stack_argument
 @click.option("--layer", type=int, required=True, metavar="N", help="The layer to solve, from 1 at the touched side.")
-@click.option("--solve", type=click.Choice(["thickness", "permittivity"]), default="thickness", help="What to solve for.")
+@click.option(
+    "--solve", type=click.Choice(["thickness", "permittivity"]), default="thickness", help="What to solve for."
+)
 @click.option("--gap", "gap_m", type=options.LENGTH, metavar="L", help="Target: the equivalent air gap.")
-@click.option("--areal", type=options.Quantity("areal", _areal), metavar="C", help="Target: capacitance per area, 26fF/mm2.")
+@click.option(
+    "--areal", type=options.Quantity("areal", _areal), metavar="C", help="Target: capacitance per area, 26fF/mm2."
+)
 @click.option("--ratio", type=options.SHARE, metavar="P", help="Target: ratio to --reference, by gap.")
-@click.option("--signal", "signal_farad", type=options.CAPACITANCE, metavar="C", help="Target: signal, by the field solution.")
+@click.option(
+    "--signal", "signal_farad", type=options.CAPACITANCE, metavar="C", help="Target: signal, by the field solution."
+)
 @options.conditions
 @options.reference_option
 @options.size_options

@@ -20,7 +20,9 @@ SHOW_PROGRESS_FROM = 2_000_000
 @click.option("--seed", type=int, default=1, metavar="N", help="Seed of the draws, default 1.")
 @click.option("--thickness-shape", type=SHAPES, default="rectangular", help="How thicknesses are drawn.")
 @click.option("--permittivity-shape", type=SHAPES, default="lognormal", help="How permittivities are drawn.")
-@click.option("--cold", "cold_c", type=options.TEMPERATURE, default=-20.0, metavar="T", help="Cold corner, default -20C.")
+@click.option(
+    "--cold", "cold_c", type=options.TEMPERATURE, default=-20.0, metavar="T", help="Cold corner, default -20C."
+)
 @click.option("--hot", "hot_c", type=options.TEMPERATURE, default=60.0, metavar="T", help="Hot corner, default 60C.")
 @click.option("--wet", "wet_pct", type=options.PERCENT, default=95.0, metavar="P", help="Wet corner, default 95%.")
 @options.conditions

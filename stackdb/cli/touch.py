@@ -13,14 +13,18 @@ from stackdb.touch.contact import Sizes
 
 @click.command("touch", epilog='Example: stackdb touch "soda-lime-glass 1.8mm / acrylic-oca 150um" --min-ratio 20%')
 @options.stack_argument
-@click.option("--case", "cases", multiple=True, metavar="NAME_OR_STACK", help="A way of touching; repeatable, default all.")
+@click.option(
+    "--case", "cases", multiple=True, metavar="NAME_OR_STACK", help="A way of touching; repeatable, default all."
+)
 @click.option("--matrix", is_flag=True, help="Show hands by surfaces as one table.")
 @options.conditions
 @options.limit_options
 @options.reference_option
 @options.size_options
 @click.option("--body", "body_farad", type=options.CAPACITANCE, metavar="C", help="Body to ground, default 100pF.")
-@click.option("--device", "device_farad", type=options.CAPACITANCE, metavar="C", help="Device to ground, default earthed.")
+@click.option(
+    "--device", "device_farad", type=options.CAPACITANCE, metavar="C", help="Device to ground, default earthed."
+)
 @click.option("--counts", type=float, metavar="N", help="Counts measured on the reference.")
 @click.option("--noise", type=float, metavar="N", help="Noise in the same counts.")
 @options.catalogue_options

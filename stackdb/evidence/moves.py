@@ -75,7 +75,7 @@ class LossCurve(NamedTuple):
     measured: bool
 
     def slope(self, x: float) -> float:
-        """d ln(tan d)/d ln f [-] at ln f = ``x``."""
+        """D ln(tan d)/d ln f [-] at ln f = ``x``."""
         for (x1, y1), (x2, y2) in zip(self.knots, self.knots[1:], strict=False):
             if x1 <= x <= x2:
                 return (y2 - y1) / (x2 - x1)
@@ -102,7 +102,7 @@ class LossCurve(NamedTuple):
 
 
 def _loss_piece(curve: LossCurve, low: float, high: float, class_loss: float) -> tuple[float, Trust, str]:
-    """ln eps(high) - ln eps(low) by the local Kramers-Kronig relation, or by the class's loss where it fails."""
+    """Ln eps(high) - ln eps(low) by the local Kramers-Kronig relation, or by the class's loss where it fails."""
     middle = 0.5 * (low + high)
     usable = curve.measured and curve.at(middle) < LOSSY and curve.slope(middle) > CONDUCTION_SLOPE
     if usable:

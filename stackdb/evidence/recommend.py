@@ -100,7 +100,7 @@ def loss_at(judged: Sequence[Judged], frequency_hz: float) -> float | None:
 
 
 def _interpolated(knots: Sequence[tuple[float, float]], x: float) -> tuple[float, float]:
-    """ln tan d at ``x`` and how far, in ln f, the nearest knot lies."""
+    """Ln tan d at ``x`` and how far, in ln f, the nearest knot lies."""
     nearest = min(abs(x - k) for k, _ in knots)
     if x <= knots[0][0] or x >= knots[-1][0]:
         y = [y for k, y in knots if abs(x - k) == nearest]

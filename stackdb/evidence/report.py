@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, NamedTuple
 
+from stackdb.catalogue import Catalogue
 from stackdb.errors import InputError
 from stackdb.evidence.judge import Conditions
 from stackdb.evidence.material import Evidence, evidence_for
@@ -15,8 +16,38 @@ from stackdb.results import Result, source_dict, sources_dict, span_dict
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
-    from stackdb.catalogue import Catalogue, ConductivityRecord, Material, Source, ThicknessRecord
+    from stackdb.catalogue import ConductivityRecord, Material, Source, ThicknessRecord
     from stackdb.evidence.judge import Judged
+
+
+class SourcedCatalogue(Catalogue):
+    """A catalogue that answers with recommended values: what ``stackdb.open_catalogue()`` opens."""
+
+    def permittivity(
+        self,
+        name: str,
+        *,
+        frequency_hz: float = 1e5,
+        temperature_c: float = 23.0,
+        humidity_pct: float = 50.0,
+        direction: str = "through",
+        level: float = 0.9,
+        source: str | None = None,
+    ) -> Evidence:
+        """The recommended permittivity [-] of a material at a frequency [Hz], temperature [degC] and humidity [%].
+
+        With its range at ``level`` [-], loss, grade, reason and sources. Raises InputError for an unknown or shared name.
+        """
+        material = material_named(self, name)
+        conditions = Conditions(frequency_hz, temperature_c, humidity_pct, direction)
+        return evidence_for(self, material, conditions, level=level, source=source)
+
+
+def open_catalogue(path: str | None = None) -> SourcedCatalogue:
+    """Open the catalogue shipped, or the file named, read only; FileError when it cannot be used."""
+    from stackdb.catalogue.opening import connect
+
+    return SourcedCatalogue(*connect(path))
 
 
 class AtFrequency(NamedTuple):
@@ -41,6 +72,12 @@ class ShowResult(Result):
     thicknesses: tuple[ThicknessRecord, ...]
     conductivities: tuple[ConductivityRecord, ...]
     sources: dict[str, Any]
+
+    def to_frame(self) -> Any:
+        """The records as a pandas table, one row each."""
+        import pandas
+
+        return pandas.DataFrame([record_dict(j) for j in self.judged])
 
     @property
     def judged(self) -> tuple[Judged, ...]:
@@ -189,6 +226,12 @@ class FindResult(Result):
     text: str
     conditions: Conditions
     found: tuple[FoundMaterial, ...]
+
+    def to_frame(self) -> Any:
+        """The hits as a pandas table, one row a material."""
+        import pandas
+
+        return pandas.json_normalize(self.to_dict()["materials"], sep="_")
 
     def to_dict(self) -> dict[str, Any]:
         """The JSON object of the contract."""

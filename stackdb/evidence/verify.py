@@ -41,7 +41,9 @@ class VerifyResult(Result):
 
 def _orphans(catalogue: Catalogue) -> Check:
     loose = [s.key for s in catalogue.sources() if not catalogue.uses_of_source(s.key)]
-    return Check("sources", not loose, f"{len(loose)} sources that nothing rests on{': ' + ', '.join(loose) if loose else ''}")
+    return Check(
+        "sources", not loose, f"{len(loose)} sources that nothing rests on{': ' + ', '.join(loose) if loose else ''}"
+    )
 
 
 def _values(catalogue: Catalogue) -> Check:
@@ -79,7 +81,13 @@ def _digest(catalogue: Catalogue) -> Check:
 
 def verify(catalogue: Catalogue, *, calibration: bool = False) -> VerifyResult:
     """Check a catalogue: pages, references, sources, values, floor, digest, and with ``calibration`` the ranges."""
-    checks = [*catalogue.check_integrity(), _orphans(catalogue), _values(catalogue), _floor(catalogue), _digest(catalogue)]
+    checks = [
+        *catalogue.check_integrity(),
+        _orphans(catalogue),
+        _values(catalogue),
+        _floor(catalogue),
+        _digest(catalogue),
+    ]
     if not calibration:
         return VerifyResult(tuple(checks), (), ())
     from stackdb.evidence.calibration import calibrate, groups, worst_misses

@@ -110,7 +110,9 @@ def _reach(problem: Problem) -> float:
     thin = min(x.thickness_m * abs(x.stretch) for x in nearest)
     reach = DECAY / thin
     if reach * max(problem.pad_m, problem.finger_m) > MOST_REACH:
-        raise InputError("layer-too-thin", f"a layer of {thin * 1e6:.3g} um is too thin against the pad for the field solution")
+        raise InputError(
+            "layer-too-thin", f"a layer of {thin * 1e6:.3g} um is too thin against the pad for the field solution"
+        )
     return reach
 
 
@@ -185,7 +187,9 @@ def _touching(problem: Problem, kern: Kernel, count: int) -> Terminals:
 
 def _with_gap(problem: Problem, kern: Kernel, count: int) -> Terminals:
     """Neighbours beyond a clearance: the field across the annular gap is unknown beside the finger's charge."""
-    system = gap.assemble(kern.grid.k, kern.grid.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m)
+    system = gap.assemble(
+        kern.grid.k, kern.grid.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m
+    )
     finger = kern.grid.waves(count, problem.finger_m)
     p22 = _gram(finger, kern.finger, kern.finger_far, kern.grid.weight, problem.finger_m)
     link = (system.waves * (kern.grid.weight * kern.transfer)) @ finger.T
@@ -202,7 +206,8 @@ def _terminals(problem: Problem, kern: Kernel, count: int) -> Terminals:
 
 def change_by(problem: Problem, found: Terminals) -> float:
     """Change [F] of the pad's own charge by a finger at ground. Among driven neighbours, or over a driven shield alone,
-    it is the pad's share of the finger's charge."""
+    it is the pad's share of the finger's charge.
+    """
     driven = problem.around == "driven" or (problem.around == "alone" and problem.below_ending == "driven")
     return -found.c12 if driven else found.c11 - found.untouched
 

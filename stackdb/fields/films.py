@@ -36,7 +36,7 @@ def sheet_admittance(
 
 
 def propagation(*, frequency_hz: float, admittance: complex, capacitance_per_area: float) -> complex:
-    """g [1/m] of a film on a plane: sqrt(j w C''/Y). Frequency [Hz], sheet admittance [S/sq], areal capacitance [F/m2]."""
+    """G [1/m] of a film on a plane: sqrt(j w C''/Y). Frequency [Hz], sheet admittance [S/sq], areal capacitance [F/m2]."""
     return complex_sqrt(2j * pi * frequency_hz * capacitance_per_area / admittance)
 
 
@@ -118,9 +118,7 @@ def apparent_touch(
     return complex((waves @ (with_film - without)) / (waves @ (grounded - without)))
 
 
-def touch_through(
-    *, cover: Sequence[FieldLayer], film_under: int, film: Sheet, pad_diameter_m: float
-) -> complex:
+def touch_through(*, cover: Sequence[FieldLayer], film_under: int, film: Sheet, pad_diameter_m: float) -> complex:
     """Share [-] of a touch by a grounded plane on the cover that comes through a floating film inside or on it.
 
     Change by the plane with the film present over the change without the film, pad among grounded neighbours, pad diameter [m];
@@ -147,7 +145,7 @@ def touch_through(
 def thin_cover_parameter(
     *, cover: Sequence[FieldLayer], admittance: complex, frequency_hz: float, pad_diameter_m: float
 ) -> complex:
-    """g times the pad radius [-] of the closed forms: sheet admittance [S/sq], frequency [Hz], pad diameter [m]."""
+    """G times the pad radius [-] of the closed forms: sheet admittance [S/sq], frequency [Hz], pad diameter [m]."""
     capacitance = EPS0 / series_gap_limit(cover).real
     g = propagation(frequency_hz=frequency_hz, admittance=admittance, capacitance_per_area=capacitance)
     return g * 0.5 * pad_diameter_m

@@ -49,7 +49,7 @@ class Sheet(NamedTuple):
 
 
 def tanh_sech(layer: FieldLayer, k: Array) -> tuple[Array, Array]:
-    """tanh and sech of the layer's k t, from exp(-kt) alone."""
+    """Tanh and sech of the layer's k t, from exp(-kt) alone."""
     decay = np.exp(-k * (layer.thickness_m * layer.stretch))
     square = decay * decay
     return (1.0 - square) / (1.0 + square), 2.0 * decay / (1.0 + square)

@@ -20,7 +20,10 @@ def draw_change(result: ChangeResult, columns: int) -> list[Line]:
     edition = compared.edition
     drawn = [
         line(INDENT, Piece(f"Change note: {compared.stacks[0].name} to {compared.stacks[1].name}", "bold")),
-        line(INDENT, f"{format_frequency(c.frequency_hz)}, {c.temperature_c:g} °C; catalogue {edition.edition} {edition.digest[:12]}"),
+        line(
+            INDENT,
+            f"{format_frequency(c.frequency_hz)}, {c.temperature_c:g} °C; catalogue {edition.edition} {edition.digest[:12]}",
+        ),
         BLANK,
         *difference_lines(compared.differences, columns),
         BLANK,

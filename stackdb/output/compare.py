@@ -28,7 +28,9 @@ def difference_lines(differences: tuple[Difference, ...], columns: int) -> list[
     """What differs, a line each."""
     drawn = []
     for d in differences:
-        change = f", gap {'+' if d.gap_change_m > 0 else '-'}{format_length(abs(d.gap_change_m))}" if d.gap_change_m else ""
+        change = (
+            f", gap {'+' if d.gap_change_m > 0 else '-'}{format_length(abs(d.gap_change_m))}" if d.gap_change_m else ""
+        )
         text = f"{d.field}: {d.before or 'none'} -> {d.after or 'none'}{change}"
         drawn += paragraph(f"{d.stack}, layer {d.layer}", text, columns - 1)
     return drawn
@@ -59,7 +61,9 @@ def notes(result: CompareResult, columns: int) -> list[Line]:
         if w.code in ("moved", "frequency-unknown"):
             drawn += paragraph("Moved", w.text, columns - 1)
     if all(s.signal_ratio is None for s in result.stacks):
-        drawn += paragraph("Validity", "ratios are by gap; equal gap is not equal signal across thicknesses", columns - 1)
+        drawn += paragraph(
+            "Validity", "ratios are by gap; equal gap is not equal signal across thicknesses", columns - 1
+        )
     return drawn
 
 

@@ -49,7 +49,9 @@ def width() -> int:
 
 def encodable(text: str, encoding: str | None) -> str:
     """The text with what an encoding cannot hold drawn in ASCII."""
-    name = encoding or "ascii"
+    if encoding is None:  # a stream of characters, not of bytes
+        return text
+    name = encoding
     try:
         text.encode(name)
     except UnicodeEncodeError:

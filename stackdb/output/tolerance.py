@@ -49,7 +49,9 @@ def _contributions(result: ToleranceResult, columns: int) -> list[Line]:
 def draw_tolerance(result: ToleranceResult, columns: int) -> list[Line]:
     """The whole screen."""
     c, drawn_samples = result.asked.conditions, result.monte_carlo
-    title = f"{format_frequency(c.frequency_hz)}, {c.temperature_c:g} °C. Ranges hold in {cases(result.asked.level)} cases."
+    title = (
+        f"{format_frequency(c.frequency_hz)}, {c.temperature_c:g} °C. Ranges hold in {cases(result.asked.level)} cases."
+    )
     scale, unit = length_unit(result.gap.span.value)
     rows = [
         ["", "nominal", "first order", "Monte Carlo", "corners"],
@@ -72,5 +74,3 @@ def draw_tolerance(result: ToleranceResult, columns: int) -> list[Line]:
         drawn += paragraph("Warning", w.text, columns - 1)
     note = f"{drawn_samples.samples} samples, seed {drawn_samples.seed}"
     return [*drawn, line(INDENT, Piece(note, "dim"))]
-
-

@@ -23,7 +23,9 @@ def _title(result: TouchResult) -> Line:
     least = result.asked.limits.min_ratio
     limit = f" Limit: {percent(least)} of {result.reference}." if least is not None else f" Against {result.reference}."
     return line(
-        INDENT, Piece(f"{name}. " if name else "", "bold"), f"{format_frequency(c.frequency_hz)}, {c.temperature_c:g} °C.{limit}"
+        INDENT,
+        Piece(f"{name}. " if name else "", "bold"),
+        f"{format_frequency(c.frequency_hz)}, {c.temperature_c:g} °C.{limit}",
     )
 
 
@@ -34,7 +36,14 @@ def _row(r: CaseResult, with_counts: bool) -> list[str]:
     signal = f"{r.signal_farad.value * 1e15:.3g} fF" if r.signal_farad else ""
     counts = f"{r.counts:.3g}" if with_counts and r.counts is not None else ""
     snr = f"{r.snr:.1f}:1" if with_counts and r.snr is not None else ""
-    return [r.case.name, length_and_range(r.gap)[0], f"{ratio} %", limits, signal, " ".join(x for x in (counts, snr) if x)]
+    return [
+        r.case.name,
+        length_and_range(r.gap)[0],
+        f"{ratio} %",
+        limits,
+        signal,
+        " ".join(x for x in (counts, snr) if x),
+    ]
 
 
 def _touches(result: TouchResult, columns: int) -> list[Line]:
@@ -42,12 +51,19 @@ def _touches(result: TouchResult, columns: int) -> list[Line]:
     rows = [(r, row) for r in result.cases if (row := _row(r, with_counts))]
     if not rows:
         return []
-    head = ["touched by", "gap", "signal", "range", "change" if any(x[4] for _, x in rows) else "", "counts" if with_counts else ""]
+    head = [
+        "touched by",
+        "gap",
+        "signal",
+        "range",
+        "change" if any(x[4] for _, x in rows) else "",
+        "counts" if with_counts else "",
+    ]
     keep = [i for i in range(6) if i < 4 or any(x[i] for _, x in rows)]
     cells = [[row[i] for i in keep] for row in (head, *(x for _, x in rows))]
     texts = aligned(cells, "".join("<>>>>>"[i] for i in keep))
     inner = max(len(t) for t in texts)
-    room = max(6, columns - inner - 18)
+    room = max(6, columns - inner - 11)
     drawn = [line(INDENT, Piece(texts[0], "dim"))]
     for (r, _), text in zip(rows, texts[1:], strict=True):
         missed = [x.name for x in r.limits if not x.met]

@@ -8,7 +8,7 @@ from typing import NoReturn
 
 from stackdb.errors import InputError
 from stackdb.quantities.exact import Exact, exact
-from stackdb.quantities.printing import printable, shortened
+from stackdb.quantities.printing import shortened
 from stackdb.quantities.units import (
     AREAL_MASS,
     CAPACITANCE,
@@ -57,7 +57,7 @@ def _check_comma(text: str) -> None:
     # A comma before three digits may have parted thousands.
     joined = re.sub(_COMMA, r"\1\2", text, count=1)
     whole = f" or {joined}" if len(found.group(2)) == 3 else ""
-    fixed = f", {printable(point + whole)}" if len(text) <= 20 else ""
+    fixed = f", {point}{whole}" if len(text) <= 20 and text.isprintable() else ""
     refuse("decimal-comma", f'"{shortened(text)}" has a decimal comma', f"write a decimal point{fixed}")
 
 
@@ -125,7 +125,11 @@ def as_float(number: Exact, text: str) -> float:
     """The float nearest to a number; InputError where no float is near."""
     value = number.value
     if not isfinite(value) or (value == 0.0 and number.digits):
-        refuse("not-finite", f'"{shortened(text)}" is beyond what a number can be', "write fewer digits or a smaller exponent")
+        refuse(
+            "not-finite",
+            f'"{shortened(text)}" is beyond what a number can be',
+            "write fewer digits or a smaller exponent",
+        )
     return value
 
 

@@ -28,7 +28,9 @@ def _refuse_percolation(material: Material, host: Material, fill: float) -> None
     """A conducting solid in an insulating host has no permittivity near or above its percolation."""
     if material.conducts == "yes" and host.conducts != "yes" and fill > PERCOLATES:
         text = f"{100 * fill:.0f} % of {material.key} conducts in {host.key}: no mixing rule holds there"
-        raise InputError("percolation", text, f"below {100 * PERCOLATES:.0f} %, or measure the sheet resistance and write rs=")
+        raise InputError(
+            "percolation", text, f"below {100 * PERCOLATES:.0f} %, or measure the sheet resistance and write rs="
+        )
 
 
 def bounds_text(fill: float, solid: float, host: float) -> str:

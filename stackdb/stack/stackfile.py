@@ -43,6 +43,8 @@ def _read(path: str) -> str:
             with open(path, "rb") as handle:
                 data = _bytes(handle, path)
         return data.decode("utf-8-sig")
+    except FileError:
+        raise
     except FileNotFoundError:
         hint = "a stack file's name ends in .toml; anything else is read as layers"
         raise FileError("file-missing", f'no file "{_shown(path)}"', hint) from None
@@ -107,7 +109,7 @@ def _check_replaceable(path: str) -> None:
             return
     except FileNotFoundError:
         return
-    except UnicodeDecodeError:
+    except (FileError, UnicodeDecodeError):
         pass
     except OSError as error:
         raise FileError("file-unwritable", f"{_shown(path)} cannot be replaced: {error.strerror}") from None

@@ -151,4 +151,3 @@ def change_note(
         rejected = [_offered(x, value, drive) for x in layers] + rejected
     corners = (corners_of(compared.stacks[0].stack)[0], corners_of(compared.stacks[1].stack)[0])
     return ChangeResult(compared, corners, tuple(rejected), RETEST)
-

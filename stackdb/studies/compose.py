@@ -11,8 +11,8 @@ from stackdb.stack import firstorder
 from stackdb.stack.resolve import ResolvedLayer, ResolvedStack, resolve
 from stackdb.stack.stackfile import load
 from stackdb.studies.asked import Asked, Limits, asked_of, catalogue_of
-from stackdb.touch.contact import Sizes
 from stackdb.touch.conduction import conduction_verdict, forbids_sum
+from stackdb.touch.contact import Sizes
 from stackdb.touch.verdicts import Verdict, Verdicts, dielectric_verdict, validity_without_sizes
 
 if TYPE_CHECKING:
@@ -55,6 +55,12 @@ class ComposeResult(Result):
     warnings: tuple[Warned, ...]
     sources: dict[str, Any]
     edition: Edition
+
+    def to_frame(self) -> Any:
+        """The layers as a pandas table, one row each."""
+        import pandas
+
+        return pandas.json_normalize(self.to_dict()["layers"], sep="_")
 
     @property
     def met(self) -> bool:

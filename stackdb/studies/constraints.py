@@ -37,7 +37,10 @@ def _whose(c: Constraint) -> str:
 def _concerns(c: Constraint, layer: ResolvedLayer) -> bool:
     if c.layer is not None:
         return c.layer == layer.number
-    return c.material is not None and fold(c.material) in (fold(layer.name), layer.material.key if layer.material else "")
+    return c.material is not None and fold(c.material) in (
+        fold(layer.name),
+        layer.material.key if layer.material else "",
+    )
 
 
 def claims_on(constraints: Sequence[Constraint], layers: Sequence[ResolvedLayer]) -> tuple[Claim, ...]:

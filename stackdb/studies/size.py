@@ -252,9 +252,7 @@ def size(
     return _thickness(found, chosen, target, thickness, gap)
 
 
-def _thickness(
-    found: Resolved, layer: ResolvedLayer, target: Target, thickness_m: float, gap_m: float
-) -> SizeResult:
+def _thickness(found: Resolved, layer: ResolvedLayer, target: Target, thickness_m: float, gap_m: float) -> SizeResult:
     rest = sum(x.air_equivalent_m for x in _others(found.stack, layer.number))
     if thickness_m <= 0.0:
         reason = (
@@ -290,7 +288,9 @@ def _permittivity(found: Resolved, layer: ResolvedLayer, target: Target, gap_m: 
     u = needed * sqrt(u_other**2 * (needed / layer.permittivity.value) ** 2 + layer.thickness_u**2)
     half = two_sided(found.asked.level) * u
     span = Span(needed, max(1.0, needed - half), needed + half)
-    return _result(found, layer, target, None, span, True, f"at least {needed:.3g} at {format_length(layer.thickness.value)}", ())
+    return _result(
+        found, layer, target, None, span, True, f"at least {needed:.3g} at {format_length(layer.thickness.value)}", ()
+    )
 
 
 def _result(

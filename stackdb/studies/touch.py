@@ -308,9 +308,7 @@ def _summed(under: Touched, frame: Frame) -> CaseResult:
     )
 
 
-def _field(
-    stack: ResolvedStack, sizes: Sizes, below: Below, shares: tuple[float, ...]
-) -> tuple[Field | None, Verdict]:
+def _field(stack: ResolvedStack, sizes: Sizes, below: Below, shares: tuple[float, ...]) -> tuple[Field | None, Verdict]:
     if not sizes.known:
         return None, validity_without_sizes(stack, shares)
     try:
@@ -386,7 +384,9 @@ def _warnings(frame: Frame, results: Sequence[CaseResult]) -> list[Warned]:
         )
         found.append(Warned("retransmission", None, text))
     if frame.path.device_farad != EARTHED_FARAD and not any(r.signal_farad for r in results):
-        found.append(Warned("return-path-open", None, "without pad, finger and --around the return path is not counted"))
+        found.append(
+            Warned("return-path-open", None, "without pad, finger and --around the return path is not counted")
+        )
     recalled = sorted({x.name for r in results for x in r.case.layers if "recalled" in x.flags})
     if recalled:
         found.append(Warned("recalled", None, f"from memory alone: {', '.join(recalled)}"))
@@ -435,7 +435,9 @@ def touch(
     frame = _frame(found, reference, body_farad, device_farad, counts, noise)
     chosen = _cases(found.catalogue, cases or found.read.cases, found.stack)
     results = tuple(_answer(case, frame) for case in chosen)
-    keys = [k for r in results for x in r.case.layers for k in x.sources] + [r.case.source for r in results if r.case.source]
+    keys = [k for r in results for x in r.case.layers for k in x.sources] + [
+        r.case.source for r in results if r.case.source
+    ]
     keys += [k for x in found.stack.layers for k in x.sources]
     return TouchResult(
         read=found.read,

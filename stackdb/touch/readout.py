@@ -31,9 +31,7 @@ def count_to(*, threshold_share: float, unknown_farad: float, integrator_farad: 
     >>> count_to(threshold_share=0.5, unknown_farad=10e-12, integrator_farad=10e-9)
     694
     """
-    n = transfers_to(
-        threshold_share=threshold_share, unknown_farad=unknown_farad, integrator_farad=integrator_farad
-    )
+    n = transfers_to(threshold_share=threshold_share, unknown_farad=unknown_farad, integrator_farad=integrator_farad)
     return ceil(n)
 
 

@@ -32,7 +32,8 @@ def loaded(*arguments: str) -> set[str]:
 
 
 @pytest.mark.parametrize(
-    "arguments", [("show", "soda-lime-glass"), ("compose", "soda-lime-glass 1.8mm / acrylic-oca 150um / pet-film 125um")]
+    "arguments",
+    [("show", "soda-lime-glass"), ("compose", "soda-lime-glass 1.8mm / acrylic-oca 150um / pet-film 125um")],
 )
 def test_nothing_heavy_is_loaded(arguments):
     modules = loaded(*arguments)

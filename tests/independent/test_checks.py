@@ -53,7 +53,8 @@ MAXWELL_WAGNER = {
 def test_maxwell_wagner_comes_out_of_the_sum(name):
     one, two, frequency, real, imaginary = MAXWELL_WAGNER[name]
     layers = [
-        Slab(d, complex_permittivity(permittivity=e, conductivity_s_per_m=s, frequency_hz=frequency)) for e, s, d in (one, two)
+        Slab(d, complex_permittivity(permittivity=e, conductivity_s_per_m=s, frequency_hz=frequency))
+        for e, s, d in (one, two)
     ]
     gap = series_gap(layers)
     effective = gap.thickness_m / gap.complex_gap_m
@@ -144,7 +145,9 @@ def test_combined_uncertainty_of_the_gap():
     gap = sum(thickness[k][0] / permittivity[k][0] for k in thickness)
     shares = {k: thickness[k][0] / permittivity[k][0] / gap for k in thickness}
     form = Form(gap, {("t", k): s for k, s in shares.items()} | {("e", k): -s for k, s in shares.items()})
-    inputs = {("t", k): u / v for k, (v, u) in thickness.items()} | {("e", k): u / v for k, (v, u) in permittivity.items()}
+    inputs = {("t", k): u / v for k, (v, u) in thickness.items()} | {
+        ("e", k): u / v for k, (v, u) in permittivity.items()
+    }
     # contributions in mm: adhesive t 0.003333, e 0.002500; film t 0.001250, e 0.000977; glass t 0.007143, e 0.004490: 0.009542
     assert gap * spread(form, inputs) == pytest.approx(0.009542, abs=1e-6)
 

@@ -27,7 +27,10 @@ def test_order_does_not_matter(layers, random):
 @given(stacks, st.floats(0.01, 0.99))
 def test_splitting_a_layer_changes_nothing(layers, share):
     first = layers[0]
-    split = [first._replace(thickness_m=share * first.thickness_m), first._replace(thickness_m=(1 - share) * first.thickness_m)]
+    split = [
+        first._replace(thickness_m=share * first.thickness_m),
+        first._replace(thickness_m=(1 - share) * first.thickness_m),
+    ]
     assert close(series_gap(layers).gap_m, series_gap(split + layers[1:]).gap_m)
 
 

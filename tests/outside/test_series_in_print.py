@@ -49,7 +49,7 @@ def test_open_textbook_filled_capacitors():
     assert gap.capacitance_per_area * 5e-3 * 200.0 == pytest.approx(3.7e-8, rel=0.008)
     assert 20.0 * ratio([(2.1, 1.0)]) == pytest.approx(42.0, rel=1e-12)
     assert 8.0 * ratio([(6.0, 1.0)]) / 0.5 == pytest.approx(96.0, rel=1e-12)
-    assert 45.0 / 11.5 == pytest.approx(3.91, rel=0.002)
+    assert pytest.approx(3.91, rel=0.002) == 45.0 / 11.5
 
 
 def test_the_widespread_wrong_answer_is_not_ours():

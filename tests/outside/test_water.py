@@ -65,9 +65,7 @@ def test_sea_water_permittivity():
     assert water.sea_water_permittivity(temperature_c=20.0) == pytest.approx(71.80, abs=0.01)
 
 
-@pytest.mark.parametrize(
-    ("hertz", "expected"), [(1e3, 89.28), (1e4, 12.14), (1e5, 3.299), (1e6, 3.201)]
-)
+@pytest.mark.parametrize(("hertz", "expected"), [(1e3, 89.28), (1e4, 12.14), (1e5, 3.299), (1e6, 3.201)])
 def test_ice_at_minus_ten(hertz, expected):
     # Johari and Jones 1978, table III parameters, evaluated as recorded to four digits
     assert water.ice_permittivity(frequency_hz=hertz, temperature_c=-10.0).real == pytest.approx(expected, rel=1e-3)
@@ -82,7 +80,9 @@ def test_moist_air(celsius, humidity, expected):
     assert water.air_permittivity(temperature_c=celsius, humidity_pct=humidity) == pytest.approx(expected, abs=4e-7)
 
 
-@pytest.mark.parametrize(("hertz", "eps", "sigma"), [(1e4, 1133.6, 0.00020), (1e5, 1119.2, 0.00045), (1e6, 990.76, 0.0132)])
+@pytest.mark.parametrize(
+    ("hertz", "eps", "sigma"), [(1e4, 1133.6, 0.00020), (1e5, 1119.2, 0.00045), (1e6, 990.76, 0.0132)]
+)
 def test_dry_skin_table(hertz, eps, sigma):
     # Gabriel 1996 model as tabulated in BioMedical Engineering OnLine 2018, table 3
     found = cole_cole(
@@ -108,7 +108,8 @@ def test_surface_tension():
 
 
 @pytest.mark.parametrize(
-    ("cas", "key"), [("64-17-5", "ethanol"), ("67-63-0", "isopropanol"), ("56-81-5", "glycerol"), ("67-64-1", "acetone")]
+    ("cas", "key"),
+    [("64-17-5", "ethanol"), ("67-63-0", "isopropanol"), ("56-81-5", "glycerol"), ("67-64-1", "acetone")],
 )
 def test_liquids_against_the_handbook_polynomials(catalogue, cas, key):
     from chemicals.permittivity import permittivity_data_CRC

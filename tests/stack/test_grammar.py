@@ -25,6 +25,7 @@ def test_the_example_of_the_contract() -> None:
         Layer("acrylic-oca", Thickness(0.00015)),
         Layer("pet-film", Thickness(0.000125)),
     )
+    assert [layer.thickness.given for layer in parse_stack(EXAMPLE).layers] == [True, False, False]
 
 
 @pytest.mark.parametrize(
@@ -45,12 +46,16 @@ def test_separators_comments_blanks_and_either_order(text: str) -> None:
     assert parse_stack(text).layers == (Layer("a", Thickness(0.001)), Layer("b", Thickness(0.002)))
 
 
-@pytest.mark.parametrize("text", ["PET film 125um", "125um PET film", "PET  film   125 um", "PET film 125 µm tol = 5 %"])
+@pytest.mark.parametrize(
+    "text", ["PET film 125um", "125um PET film", "PET  film   125 um", "PET film 125 µm tol = 5 %"]
+)
 def test_names_hold_spaces_and_keep_their_case(text: str) -> None:
     assert names(text) == ["PET film"]
 
 
-@pytest.mark.parametrize("name", ["FR-4", "PA66 dry", "2k-epoxy", "Glas für Anzeigen", "PMMA_cast", "ガラス", "R&D foil"])
+@pytest.mark.parametrize(
+    "name", ["FR-4", "PA66 dry", "2k-epoxy", "Glas für Anzeigen", "PMMA_cast", "ガラス", "R&D foil"]
+)
 def test_names_as_engineers_write_them(name: str) -> None:
     assert names(f"{name} 1mm eps=3") == [name]
 
@@ -117,8 +122,10 @@ def test_where_a_layer_stood_is_not_what_it_is() -> None:
 # Laws of the text of a stack.
 
 words = st.text(st.sampled_from("abcdefgxyzABCÄé"), min_size=1, max_size=8)
-layer_names = st.lists(words, min_size=1, max_size=3).map(" ".join).filter(
-    lambda n: not {"in", "or", "by", "none", "nm", "um", "mm", "cm", "m", "mil"} & set(n.casefold().split())
+layer_names = (
+    st.lists(words, min_size=1, max_size=3)
+    .map(" ".join)
+    .filter(lambda n: not {"in", "or", "by", "none", "nm", "um", "mm", "cm", "m", "mil"} & set(n.casefold().split()))
 )
 metres = st.floats(0.0, 1.0).map(abs)
 small = st.integers(1, 10_000).map(lambda n: n / 1e7)
