@@ -25,7 +25,58 @@ COMMANDS = {
     "touch": ("touch", "soda-lime-glass 1.8mm / acrylic-oca 150um", "--min-ratio", "20%"),
 }
 # What front stacks are made of; conductors are recognised, not valued.
-STACK_MATERIALS = ["soda-lime-glass", "strengthened-soda-lime-glass", "alkali-aluminosilicate-glass", "lithium-aluminosilicate-glass-ceramic", "alkali-free-display-glass", "borosilicate-glass", "fused-silica", "sapphire", "pmma-cast", "pmma-extruded", "polycarbonate", "pet-film", "pen-film", "cop-film", "coc-film", "tac-film", "polyimide-film", "polyimide-film-clear", "pvc-rigid", "pvc-plasticised", "tpu-film", "abs", "polypropylene", "polyethylene", "ptfe", "pa66", "fr4-laminate", "acrylic-oca", "acrylic-oca-low", "acrylic-oca-high", "silicone-oca", "acrylic-loca", "silicone-loca", "pvb-interlayer", "eva-interlayer", "acrylic-foam-tape", "epoxy", "polyurethane-coating", "black-ink", "white-ink", "hard-coat", "nitrile-rubber", "natural-rubber", "neoprene", "leather", "cotton", "wool", "polyester-textile", "water", "air"]
+STACK_MATERIALS = [
+    "soda-lime-glass",
+    "strengthened-soda-lime-glass",
+    "alkali-aluminosilicate-glass",
+    "lithium-aluminosilicate-glass-ceramic",
+    "alkali-free-display-glass",
+    "borosilicate-glass",
+    "fused-silica",
+    "sapphire",
+    "pmma-cast",
+    "pmma-extruded",
+    "polycarbonate",
+    "pet-film",
+    "pen-film",
+    "cop-film",
+    "coc-film",
+    "tac-film",
+    "polyimide-film",
+    "polyimide-film-clear",
+    "pvc-rigid",
+    "pvc-plasticised",
+    "tpu-film",
+    "abs",
+    "polypropylene",
+    "polyethylene",
+    "ptfe",
+    "pa66",
+    "fr4-laminate",
+    "acrylic-oca",
+    "acrylic-oca-low",
+    "acrylic-oca-high",
+    "silicone-oca",
+    "acrylic-loca",
+    "silicone-loca",
+    "pvb-interlayer",
+    "eva-interlayer",
+    "acrylic-foam-tape",
+    "epoxy",
+    "polyurethane-coating",
+    "black-ink",
+    "white-ink",
+    "hard-coat",
+    "nitrile-rubber",
+    "natural-rubber",
+    "neoprene",
+    "leather",
+    "cotton",
+    "wool",
+    "polyester-textile",
+    "water",
+    "air",
+]
 # Where published figures disagree: material, frequency in Hz.
 DISAGREEMENTS = (
     ("soda-lime-glass", 1e5, "6.8 to 7.75 by composition and frequency"),
@@ -128,7 +179,7 @@ def calibration() -> str:
         for g in verify(catalogue, calibration=True).groups:
             between = f"{100 * g.coverage_low:.0f} .. {100 * g.coverage_high:.0f} %"
             rows.append(
-                f"| {g.name} | {g.count} | {100 * g.coverage:.0f} % | {between} | {100 * g.median_half_width:.1f} % |"
+                f"| {g.name} | {g.figures} | {100 * g.coverage:.0f} % | {between} | {100 * g.median_half_width:.1f} % |"
                 f" {g.interval_score:.2f} |"
             )
     return "\n".join(rows) + "\n"

@@ -76,7 +76,7 @@ def main() -> None:
             group = summarise(name, leave_one_out(where, material, rows), 0.9)
             if group is not None:
                 print(
-                    f"{'':<8} left out {group.count}, inside {group.hits}, median half-width"
+                    f"{'':<8} left out {group.figures}, inside {group.hits}, median half-width"
                     f" {100 * group.median_half_width:.1f} %, score {group.interval_score:.2f}"
                 )
 

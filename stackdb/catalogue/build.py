@@ -141,16 +141,14 @@ def _reference_faults(rows: dict[str, list[Row]]) -> Iterator[Fault]:
             seen.add(row.values["key"])
         keys[name] = seen
     used: set[Value] = set()
-    for table in TABLES:
-        for column in table.columns:
-            if not column.refers:
-                continue
-            for row in rows[table.name]:
-                value = row.values[column.stored]
-                if value is not None and value not in keys[column.refers]:
-                    yield Fault(f"{table.name}.csv", row.line, column.name, f'no {column.refers} "{value}"')
-                if column.refers == "source":
-                    used.add(value)
+    for table, column in ((t, c) for t in TABLES for c in t.columns if c.refers):
+        values = {row.values[column.stored] for row in rows[table.name]}
+        used |= values if column.refers == "source" else set()
+        loose = values - keys[column.refers] - {None}
+        for row in rows[table.name] if loose else ():
+            if row.values[column.stored] in loose:
+                text = f'no {column.refers} "{row.values[column.stored]}"'
+                yield Fault(f"{table.name}.csv", row.line, column.name, text)
     for row in rows["source"]:
         if row.values["key"] not in used:
             yield Fault("source.csv", row.line, "key", f'nothing rests on "{row.values["key"]}"')

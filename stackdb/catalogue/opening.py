@@ -134,7 +134,7 @@ class Catalogue:
     def uses_of_source(self, key: str) -> tuple[tuple[str, str, int], ...]:
         """Material, table and number of rows for everything that rests on a source."""
         parts = " UNION ALL ".join(
-            f"SELECT material, '{table}' AS place FROM {table} WHERE source = ?1"
+            f"SELECT material, '{table}' AS place FROM {table} WHERE source = ?1"  # noqa: S608 - our own tables
             for table in ("permittivity", "thickness", "conductivity", "dispersion")
         )
         parts += " UNION ALL SELECT material, 'quoted' FROM permittivity WHERE quoted_in = ?1"

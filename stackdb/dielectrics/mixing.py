@@ -33,7 +33,7 @@ def maxwell_garnett(fraction: float, inclusion: complex, matrix: complex) -> com
     """Spheres spread in a matrix: J. C. Maxwell Garnett 1904, exact to first order in the fraction [-].
 
     >>> round(maxwell_garnett(0.18, 114.0, 3.5).real, 2)
-    5.56
+    5.57
     """
     step = inclusion - matrix
     return matrix + 3.0 * fraction * matrix * step / (inclusion + 2.0 * matrix - fraction * step)

@@ -51,7 +51,7 @@ class Group(NamedTuple):
     """A group of left-out figures: how many, hits, the binomial 95 % interval of the coverage [-], width, score."""
 
     name: str
-    count: int
+    figures: int
     hits: int
     coverage: float
     coverage_low: float

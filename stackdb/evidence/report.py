@@ -75,9 +75,9 @@ class ShowResult(Result):
 
     def to_frame(self) -> Any:
         """The records as a pandas table, one row each."""
-        import pandas
+        import pandas as pd
 
-        return pandas.DataFrame([record_dict(j) for j in self.judged])
+        return pd.DataFrame([record_dict(j) for j in self.judged])
 
     @property
     def judged(self) -> tuple[Judged, ...]:
@@ -229,9 +229,9 @@ class FindResult(Result):
 
     def to_frame(self) -> Any:
         """The hits as a pandas table, one row a material."""
-        import pandas
+        import pandas as pd
 
-        return pandas.json_normalize(self.to_dict()["materials"], sep="_")
+        return pd.json_normalize(self.to_dict()["materials"], sep="_")
 
     def to_dict(self) -> dict[str, Any]:
         """The JSON object of the contract."""

@@ -95,9 +95,9 @@ def verify(catalogue: Catalogue, *, calibration: bool = False) -> VerifyResult:
     rows = calibrate(catalogue, level=LEVEL)
     found = groups(rows, LEVEL)
     every = found[0]
-    holds = every.coverage_low <= LEVEL <= every.coverage_high and every.count >= LEAST_FIGURES
+    holds = every.coverage_low <= LEVEL <= every.coverage_high and every.figures >= LEAST_FIGURES
     text = (
-        f"{every.hits} of {every.count} left-out figures inside, {100 * every.coverage:.0f} %"
+        f"{every.hits} of {every.figures} left-out figures inside, {100 * every.coverage:.0f} %"
         f" ({100 * every.coverage_low:.0f} .. {100 * every.coverage_high:.0f} % binomial), asked {100 * LEVEL:.0f} %"
     )
     checks.append(Check("calibration", holds, text))

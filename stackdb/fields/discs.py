@@ -108,7 +108,9 @@ def _reach(problem: Problem) -> float:
     """Wavenumber [1/m] beyond which the kernel is its own limit."""
     nearest = [problem.cover[0], problem.cover[-1], *problem.below[:1]]
     thin = min(x.thickness_m * abs(x.stretch) for x in nearest)
-    reach = DECAY / thin
+    # what couples pad and finger falls by the whole cover once, what reflects from a layer by its thickness twice
+    whole = sum(x.thickness_m * abs(x.stretch) for x in problem.cover)
+    reach = max(DECAY / thin, 2.0 * DECAY / whole)
     if reach * max(problem.pad_m, problem.finger_m) > MOST_REACH:
         raise InputError(
             "layer-too-thin", f"a layer of {thin * 1e6:.3g} um is too thin against the pad for the field solution"

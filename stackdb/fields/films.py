@@ -42,9 +42,10 @@ def propagation(*, frequency_hz: float, admittance: complex, capacitance_per_are
 
 def _bessel(order: int, z: complex) -> tuple[complex, complex]:
     """I and K of an order, each without its exponential growth: I exp(-Re z), K exp(z)."""
-    from scipy.special import ive, kve
+    from scipy import special
 
-    return complex(ive(order, z)), complex(kve(order, z))
+    functions: Any = special  # its stubs know no complex scalars of this kind
+    return complex(functions.ive(order, z)), complex(functions.kve(order, z))
 
 
 def _ik(i_order: int, zi: complex, k_order: int, zk: complex) -> complex:

@@ -23,7 +23,15 @@ def draw_verify(result: VerifyResult, columns: int) -> list[Line]:
         between = f"{100 * g.coverage_low:.0f} .. {100 * g.coverage_high:.0f}"
         width = f"{100 * g.median_half_width:.1f} %"
         rows.append(
-            [g.name, str(g.count), str(g.hits), f"{100 * g.coverage:.0f} %", between, width, f"{g.interval_score:.2f}"]
+            [
+                g.name,
+                str(g.figures),
+                str(g.hits),
+                f"{100 * g.coverage:.0f} %",
+                between,
+                width,
+                f"{g.interval_score:.2f}",
+            ]
         )
     texts = aligned(rows, "<>>>>>>", 1)
     drawn += [BLANK, line(INDENT, Piece(texts[0], "dim")), *(line(INDENT, t) for t in texts[1:])]

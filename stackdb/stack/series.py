@@ -52,8 +52,8 @@ def complex_permittivity(
 def series_gap(slabs: Sequence[Slab]) -> SeriesGap:
     """Compose slabs in series. Zero total thickness gives an infinite capacitance and is refused by the caller.
 
-    >>> series_gap([Slab(1.1e-3, 7.0), Slab(0.15e-3, 3.0)]).gap_m
-    0.00020714285714285714
+    >>> round(1e3 * series_gap([Slab(1.1e-3, 7.0), Slab(0.15e-3, 3.0)]).gap_m, 4)
+    0.2071
     """
     total = sum(s.thickness_m for s in slabs)
     gap = sum((s.thickness_m / complex(s.permittivity) for s in slabs), 0j)

@@ -132,7 +132,7 @@ def _aligned(first: Sequence[ResolvedLayer], other: Sequence[ResolvedLayer]) -> 
 
     pairs: list[tuple[Any, Any]] = []
     names = [[x.name for x in layers] for layers in (first, other)]
-    for tag, a1, a2, b1, b2 in SequenceMatcher(None, *names, autojunk=False).get_opcodes():
+    for tag, a1, a2, b1, b2 in SequenceMatcher(a=names[0], b=names[1], autojunk=False).get_opcodes():
         old, new = list(first[a1:a2]), list(other[b1:b2])
         size = max(len(old), len(new)) if tag != "equal" else len(old)
         pairs += [(old[i] if i < len(old) else None, new[i] if i < len(new) else None) for i in range(size)]
@@ -278,9 +278,9 @@ def compare(
         **options,
     )
     c = first.asked.conditions
-    common = {"frequency_hz": c.frequency_hz, "temperature_c": c.temperature_c, "humidity_pct": c.humidity_pct}
-    options |= {"catalogue": first.catalogue, "level": first.asked.level}
-    found = [first, *(resolved(s, sizes=first.asked.sizes, **common, **options) for s in stacks[1:])]
+    options |= {"catalogue": first.catalogue, "level": first.asked.level, "sizes": first.asked.sizes}
+    options |= {"frequency_hz": c.frequency_hz, "temperature_c": c.temperature_c, "humidity_pct": c.humidity_pct}
+    found = [first, *(resolved(s, **options) for s in stacks[1:])]
     fields = [_solved(f) for f in found]
     compared = tuple(
         _compared(f, n, first, fields[0], field) for n, (f, field) in enumerate(zip(found, fields, strict=True), 1)

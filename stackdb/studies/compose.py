@@ -58,9 +58,9 @@ class ComposeResult(Result):
 
     def to_frame(self) -> Any:
         """The layers as a pandas table, one row each."""
-        import pandas
+        import pandas as pd
 
-        return pandas.json_normalize(self.to_dict()["layers"], sep="_")
+        return pd.json_normalize(self.to_dict()["layers"], sep="_")
 
     @property
     def met(self) -> bool:

@@ -46,7 +46,7 @@ def test_given_permittivities_give_the_exact_sum(stackdb):
 
 def test_json_holds_the_contract(stackdb):
     body = json.loads(stackdb("compose", DESIGN, "--json").out)
-    assert list(body)[0] == "format"
+    assert next(iter(body)) == "format"
     assert body["format"] == 1
     for key in (
         "conditions", "level", "layers", "thickness_m", "air_equivalent_gap_m", "cover_equivalent_gap_m",

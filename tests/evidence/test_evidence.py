@@ -20,7 +20,7 @@ def left_out(catalogue):
 
 def test_the_binomial_interval_of_the_coverage_holds_nine_tenths(left_out):
     every = groups(left_out, 0.9)[0]
-    assert every.count >= 100
+    assert every.figures >= 100
     assert every.coverage_low <= 0.90 <= every.coverage_high
 
 

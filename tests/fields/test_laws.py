@@ -14,7 +14,9 @@ from stackdb.fields.kernel import INFINITE, FieldLayer, look, series_gap_limit
 from stackdb.fields.quadrature import even_spherical_bessel
 from stackdb.quantities import EPS0
 
-layers = st.lists(st.builds(FieldLayer, st.floats(2e-4, 3e-3), st.floats(1.0, 20.0)), min_size=1, max_size=3)
+layers = st.lists(
+    st.tuples(st.floats(2e-4, 3e-3), st.floats(1.0, 20.0)).map(lambda x: FieldLayer(*x)), min_size=1, max_size=3
+)
 radius = st.floats(2e-3, 8e-3)
 around = st.sampled_from(["alone", "grounded", "driven"])
 
