@@ -56,6 +56,11 @@ class Catalogue:
     ) -> None:
         self.close()
 
+    @property
+    def handle(self) -> tuple[sqlite3.Connection, str]:
+        """The connection and the path, for a catalogue laid over this one."""
+        return self._database, self.path
+
     def close(self) -> None:
         """Let the file go."""
         self._database.close()

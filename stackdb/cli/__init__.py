@@ -11,7 +11,7 @@ from stackdb.errors import InputError, StackdbError
 
 HEADINGS = {
     "Look up": ("find", "show", "sources"),
-    "Work out": ("compose", "touch", "compare", "size", "tolerance"),
+    "Work out": ("compose", "touch", "edges", "compare", "size", "tolerance"),
     "Hand over": ("change", "verify", "explain"),
 }
 TRY = (

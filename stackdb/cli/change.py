@@ -43,6 +43,7 @@ def command(
     old: str,
     new: str,
     catalogue_path: str | None,
+    own: bool,
     as_json: bool,
     get: str | None,
     ascii_only: bool,
@@ -52,7 +53,7 @@ def command(
     from stackdb.studies.change import change_note
 
     sizes, limits = options.take(asked, Sizes), options.take(asked, Limits)
-    with options.opened(catalogue_path) as catalogue:
+    with options.opened(catalogue_path, own=own) as catalogue:
         result = change_note(old, new, catalogue=catalogue, sizes=sizes, limits=limits, **asked)
         options.emit(result, as_json=as_json, get=get, ascii_only=ascii_only)
     ctx.exit(0 if result.met else 1)

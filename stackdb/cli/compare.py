@@ -25,6 +25,7 @@ def command(
     *,
     stacks: tuple[str, ...],
     catalogue_path: str | None,
+    own: bool,
     as_json: bool,
     get: str | None,
     ascii_only: bool,
@@ -34,7 +35,7 @@ def command(
     from stackdb.studies.compare import compare
 
     sizes, limits = options.take(asked, Sizes), options.take(asked, Limits)
-    with options.opened(catalogue_path) as catalogue:
+    with options.opened(catalogue_path, own=own) as catalogue:
         result = compare(stacks, catalogue=catalogue, sizes=sizes, limits=limits, **asked)
         options.emit(result, as_json=as_json, get=get, ascii_only=ascii_only)
     ctx.exit(0 if result.met else 1)

@@ -19,6 +19,7 @@ from stackdb.touch.contact import Sizes
 @click.option(
     "--as", "as_material", metavar="MATERIAL", help="The gap as a thickness of this material (default: layer 1)."
 )
+@options.blur_option
 @options.size_options
 @options.catalogue_options
 @click.option("--save", metavar="FILE", help="Write the stack to a stack file.")
@@ -31,6 +32,7 @@ def command(
     words: tuple[str, ...],
     save: str | None,
     catalogue_path: str | None,
+    own: bool,
     as_json: bool,
     get: str | None,
     ascii_only: bool,
@@ -43,7 +45,7 @@ def command(
     from stackdb.studies.compose import compose
 
     sizes, limits = options.take(asked, Sizes), options.take(asked, Limits)
-    with options.opened(catalogue_path) as catalogue:
+    with options.opened(catalogue_path, own=own) as catalogue:
         result = compose(options.text_of(words), catalogue=catalogue, sizes=sizes, limits=limits, **asked)
         if save is not None:
             from stackdb.stack.stackfile import write_stack

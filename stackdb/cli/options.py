@@ -80,6 +80,7 @@ conditions = bundle(
 catalogue_options = bundle(
     click.option("--catalogue", "catalogue_path", metavar="FILE", help="A catalogue file in place of the one shipped."),
     click.option("--source", metavar="KEY", help="Let one source alone speak."),
+    click.option("--own", is_flag=True, help="Use own figures beside the curated ones."),
 )
 output_options = bundle(
     click.option("--json", "as_json", is_flag=True, help="Print one JSON object and nothing else."),
@@ -90,6 +91,9 @@ limit_options = bundle(
     click.option("--max-gap", "max_gap_m", type=LENGTH, metavar="L", help="Greatest gap; exit status 1 when passed."),
     click.option("--min-ratio", type=SHARE, metavar="P", help="Least ratio to the reference."),
     click.option("--min-signal", "min_signal_farad", type=CAPACITANCE, metavar="C", help="Least signal (needs sizes)."),
+)
+blur_option = click.option(
+    "--blur", "blur_m", type=LENGTH, metavar="L", help="How far a conducting film may smear a touch, default 5mm."
 )
 size_options = bundle(
     click.option("--pad", "pad_m", type=LENGTH, metavar="D", help="Pad diameter, for the field solution."),
@@ -112,11 +116,16 @@ def take(values: dict[str, Any], kind: type[Sizes] | type[Limits]) -> Any:
     return kind(**{name: values.pop(name) for name in kind._fields})
 
 
-def opened(path: str | None) -> Catalogue:
-    """The catalogue named, else the one shipped."""
+def opened(path: str | None, *, own: bool = False) -> Catalogue:
+    """The catalogue named, else the one shipped; with own figures where they are asked for."""
     from stackdb.catalogue import open_catalogue
 
-    return open_catalogue(path)
+    curated = open_catalogue(path)
+    if not own:
+        return curated
+    from stackdb.catalogue.own import with_own
+
+    return with_own(curated)
 
 
 def emit(result: Result, *, as_json: bool, get: str | None, ascii_only: bool) -> None:

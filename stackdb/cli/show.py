@@ -27,6 +27,7 @@ def command(
     *,
     words: tuple[str, ...],
     catalogue_path: str | None,
+    own: bool,
     as_json: bool,
     get: str | None,
     ascii_only: bool,
@@ -36,6 +37,6 @@ def command(
     from stackdb.evidence.report import show
 
     given = {name: value for name, value in asked.items() if value is not None}
-    with options.opened(catalogue_path) as catalogue:
+    with options.opened(catalogue_path, own=own) as catalogue:
         result = show(options.text_of(words), catalogue=catalogue, **given)
         options.emit(result, as_json=as_json, get=get, ascii_only=ascii_only)

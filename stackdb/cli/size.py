@@ -63,6 +63,7 @@ def command(
     ratio: float | None,
     signal_farad: float | None,
     catalogue_path: str | None,
+    own: bool,
     as_json: bool,
     get: str | None,
     ascii_only: bool,
@@ -73,7 +74,7 @@ def command(
 
     target = _target(gap_m=gap_m, areal=areal, ratio=ratio, signal_farad=signal_farad)
     sizes = options.take(asked, Sizes)
-    with options.opened(catalogue_path) as catalogue:
+    with options.opened(catalogue_path, own=own) as catalogue:
         result = size(options.text_of(words), target=target, catalogue=catalogue, sizes=sizes, **asked)
         options.emit(result, as_json=as_json, get=get, ascii_only=ascii_only)
     ctx.exit(0 if result.met else 1)

@@ -37,6 +37,7 @@ def command(
     *,
     words: tuple[str, ...],
     catalogue_path: str | None,
+    own: bool,
     as_json: bool,
     get: str | None,
     ascii_only: bool,
@@ -47,7 +48,7 @@ def command(
 
     limits = options.take(asked, Limits)
     watched = asked["samples"] >= SHOW_PROGRESS_FROM and sys.stderr.isatty()
-    with options.opened(catalogue_path) as catalogue:
+    with options.opened(catalogue_path, own=own) as catalogue:
         if watched:
             with click.progressbar(length=asked["samples"], label="drawing", file=sys.stderr) as bar:
                 result = tolerance(

@@ -20,6 +20,7 @@ from stackdb.touch.contact import Sizes
 @options.conditions
 @options.limit_options
 @options.reference_option
+@options.blur_option
 @options.size_options
 @click.option("--body", "body_farad", type=options.CAPACITANCE, metavar="C", help="Body to ground, default 100pF.")
 @click.option(
@@ -37,6 +38,7 @@ def command(
     words: tuple[str, ...],
     matrix: bool,
     catalogue_path: str | None,
+    own: bool,
     as_json: bool,
     get: str | None,
     ascii_only: bool,
@@ -46,7 +48,7 @@ def command(
     from stackdb.studies.touch import touch
 
     sizes, limits = options.take(asked, Sizes), options.take(asked, Limits)
-    with options.opened(catalogue_path) as catalogue:
+    with options.opened(catalogue_path, own=own) as catalogue:
         result = touch(options.text_of(words), catalogue=catalogue, sizes=sizes, limits=limits, **asked)
         if matrix and not as_json and not get:
             from stackdb.output.terminal import show, width

@@ -262,6 +262,30 @@ def plane_change(problem: Problem) -> float:
     return with_plane - without
 
 
+def square_plane_change(*, cover: Sequence[FieldLayer], side_m: float, angles: int = 48) -> float:
+    """Change [F] of a square pad among grounded neighbours by a grounded plane on the cover: one integral, exact.
+
+    eps0 int int k [Y1 - Y0] abs(P)^2 d2k/(2 pi)^2 with P the transform of the outline, sinc by sinc; ``side_m`` [m].
+    """
+    layers = tuple(reversed(_real(cover)))
+    reach = max(DECAY / layers[0].thickness_m, 2.0 * DECAY / sum(x.thickness_m for x in layers))
+    nodes = grid(side_m, reach)
+    difference = np.real(look(layers, INFINITE, nodes.k).admittance - look(layers, 1.0, nodes.k).admittance)
+    x, w = np.polynomial.legendre.leggauss(angles)
+    angle = 0.125 * pi * (x + 1.0)  # an eighth of the circle is enough by symmetry
+    half = 0.5 * side_m * nodes.k[:, None]
+    outline = np.sinc(half * np.cos(angle) / pi) * np.sinc(half * np.sin(angle) / pi)
+    mean_square = (outline**2 @ w) * 0.5
+    return EPS0 * side_m**4 / (2.0 * pi) * float(nodes.weight @ (nodes.k**2 * difference * mean_square))
+
+
+def equal_disc_diameter(side_m: float) -> float:
+    """Diameter [m] of the disc of a square pad's area: it stands for the square under a finger disc, within 2 % down to a
+    thickness of a fiftieth of the side and 1 % from a tenth on (checked against two-square-plate values).
+    """
+    return 2.0 * side_m / pi**0.5
+
+
 def _checked(problem: Problem) -> Problem:
     if problem.pad_m <= 0.0 or problem.finger_m <= 0.0:
         raise InputError("out-of-range", "pad and finger need a diameter above 0")

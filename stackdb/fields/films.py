@@ -92,14 +92,19 @@ def driven_rim_film(ga: complex, gb: complex) -> complex:
 
 
 def apparent_touch(
-    *, cover: Sequence[FieldLayer], film_under: int, film: Sheet, pad_diameter_m: float, around: str = "grounded"
+    *,
+    cover: Sequence[FieldLayer],
+    film_under: int,
+    film: Sheet | FieldLayer,
+    pad_diameter_m: float,
+    around: str = "grounded",
 ) -> complex:
     """F [-] of an unbounded film by the layered solution, all of the electrode plane at given potentials.
 
-    ``cover`` from the touched side down to the electrode; ``film_under`` how many of its layers lie above the film (0: the film is
-    on the touched surface). Pad diameter [m]. Among grounded neighbours the exact integral
-    2 pi a^2 int [Y_film - Y_open] J1(ka)^2 dk over that of a grounded plane on the film's face; among driven ones an unbounded
-    floating film changes nothing.
+    ``cover`` from the touched side down to the electrode; ``film_under`` how many of its layers lie above the film (0: the film
+    is on the touched surface); ``film`` a sheet, or a liquid as a layer of complex permittivity. Pad diameter [m]. Among grounded
+    neighbours the exact integral 2 pi a^2 int [Y_film - Y_open] J1(ka)^2 dk over that of a grounded plane on the film's face;
+    among driven ones an unbounded floating film changes nothing.
     """
     if around == "driven":
         return 0j
@@ -112,7 +117,11 @@ def apparent_touch(
     nodes = grid(a, reach)
     k, weight = nodes.k, nodes.weight
     air = look(above, 1.0, k).admittance
-    with_film = look(under, air + sheet_term(film, k), k).admittance
+    if isinstance(film, Sheet):
+        over: Array = air + sheet_term(film, k)
+    else:
+        over = look([film], air, k).admittance
+    with_film = look(under, over, k).admittance
     without = look(under, air, k).admittance
     grounded = look(under, INFINITE, k).admittance
     waves = weight * j1(k * a) ** 2

@@ -200,4 +200,6 @@ def draw_compose(result: ComposeResult, columns: int) -> list[Line]:
     drawn += cross_section(result.stack.layers, result.shares, numbers, columns)
     drawn += [BLANK, *_numbers(result), BLANK, *verdict_lines(result.verdicts, columns)]
     drawn += limit_lines(result.limits, columns)
+    for claim in result.claims:
+        drawn += paragraph("Constraint", f"{'kept' if claim.kept else 'NOT KEPT'}: {claim.text}", columns - 1)
     return [*drawn, BLANK, *_footnotes(result, numbers, columns)]

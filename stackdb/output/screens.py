@@ -21,6 +21,7 @@ SCREENS = {
     "SizeResult": "size",
     "ToleranceResult": "tolerance",
     "ChangeResult": "change",
+    "EdgesResult": "edges",
     "VerifyResult": "verify",
 }
 

@@ -250,6 +250,23 @@ def _moves(found: Sequence[Resolved]) -> list[Warned]:
     return warned
 
 
+def _other_conditions(found: Sequence[Resolved]) -> list[Warned]:
+    """Files written for other conditions than those they are compared at."""
+    c = found[0].asked.conditions
+    warned = []
+    for number, f in enumerate(found[1:], 2):
+        own = f.read.frequency_hz
+        if own is not None and own != c.frequency_hz:
+            text = (
+                f"stack {number} is written for {format_frequency(own)}, compared at {format_frequency(c.frequency_hz)}"
+            )
+            warned.append(Warned("moved", None, text))
+        if f.read.temperature_c is not None and f.read.temperature_c != c.temperature_c:
+            text = f"stack {number} is written for {f.read.temperature_c:g} degC, compared at {c.temperature_c:g} degC"
+            warned.append(Warned("moved", None, text))
+    return warned
+
+
 def compare(
     stacks: Sequence[str | PathLike[str] | Stack],
     *,
@@ -286,7 +303,7 @@ def compare(
         _compared(f, n, first, fields[0], field) for n, (f, field) in enumerate(zip(found, fields, strict=True), 1)
     )
     differences = [d for n, f in enumerate(found[1:], 2) for d in differences_between(first.stack, f.stack, n)]
-    warnings = _moves(found)
+    warnings = _moves(found) + _other_conditions(found)
     warnings += [Warned("refused", None, s.conduction.text) for s in compared if s.conduction.state == REFUSED]
     return CompareResult(
         stacks=compared,

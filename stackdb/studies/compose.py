@@ -11,7 +11,8 @@ from stackdb.stack import firstorder
 from stackdb.stack.resolve import ResolvedLayer, ResolvedStack, resolve
 from stackdb.stack.stackfile import load
 from stackdb.studies.asked import Asked, Limits, asked_of, catalogue_of
-from stackdb.touch.conduction import conduction_verdict, forbids_sum
+from stackdb.studies.constraints import Claim, claims_on
+from stackdb.touch.conduction import DEFAULT_BLUR_M, conduction_verdict, forbids_sum
 from stackdb.touch.contact import Sizes
 from stackdb.touch.verdicts import Verdict, Verdicts, dielectric_verdict, validity_without_sizes
 
@@ -52,6 +53,7 @@ class ComposeResult(Result):
     field: Field | None
     verdicts: Verdicts
     limits: tuple[Limit, ...]
+    claims: tuple[Claim, ...]
     warnings: tuple[Warned, ...]
     sources: dict[str, Any]
     edition: Edition
@@ -92,6 +94,7 @@ class ComposeResult(Result):
             body["field"] = self.field.to_dict() if self.field is not None else None
         body["verdicts"] = verdicts_dict(self.verdicts)
         body["limits"] = [limit._asdict() for limit in self.limits]
+        body["constraints"] = [c.to_dict() for c in self.claims]
         body["warnings"] = [w._asdict() for w in self.warnings]
         body["sources"] = self.sources
         body["catalogue"] = self.edition._asdict()
@@ -273,6 +276,7 @@ def compose(
     source: str | None = None,
     reference: str | PathLike[str] | Stack | None = None,
     as_material: str | None = None,
+    blur_m: float | None = None,
     sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
     limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
 ) -> ComposeResult:
@@ -297,10 +301,12 @@ def compose(
     if other is not None:
         against = resolve(found.catalogue, load(other), found.asked.conditions, level=found.asked.level, source=source)
         ratio = ratio_of_gaps(against, found.stack, found.asked.level)
-    return _composed(found, ratio, other, as_material)
+    return _composed(found, ratio, other, as_material, blur_m or DEFAULT_BLUR_M)
 
 
-def _composed(found: Resolved, ratio: Span | None, reference: Any, as_material: str | None) -> ComposeResult:
+def _composed(
+    found: Resolved, ratio: Span | None, reference: Any, as_material: str | None, blur_m: float
+) -> ComposeResult:
     stack, asked = found.stack, found.asked
     shares = firstorder.shares(stack.layers)
     refused = any(forbids_sum(x) for x in stack.layers)
@@ -330,8 +336,13 @@ def _composed(found: Resolved, ratio: Span | None, reference: Any, as_material: 
         reference=None if reference is None else str(reference),
         gap_ratio=ratio,
         field=field,
-        verdicts=Verdicts(dielectric_verdict(stack, gap, shares, following), conduction_verdict(stack), validity),
+        verdicts=Verdicts(
+            dielectric_verdict(stack, gap, shares, following),
+            conduction_verdict(stack, blur_m, asked.sizes.pad_m),
+            validity,
+        ),
         limits=tuple(checked),
+        claims=claims_on(found.read.constraints, stack.layers),
         warnings=tuple(_warnings(stack)),
         sources=sources_dict(found.catalogue, _used_sources(stack)),
         edition=edition_of(found.catalogue),

@@ -15,7 +15,13 @@ from stackdb.stack.stackfile import load
 from stackdb.studies.asked import Asked, Limits
 from stackdb.studies.compose import Resolved, conditions_dict, edition_of, resolved, verdicts_dict
 from stackdb.touch.cases import BARE, Case, Touched, default_cases, named_case, touched
-from stackdb.touch.conduction import conduction_verdict, continuous_conductor, sheet_resistance, smear_length
+from stackdb.touch.conduction import (
+    DEFAULT_BLUR_M,
+    conduction_verdict,
+    continuous_conductor,
+    sheet_resistance,
+    smear_length,
+)
 from stackdb.touch.contact import Below, Field, Sizes, field_layers, resolve_below, solve_field, validity_verdict
 from stackdb.touch.returnpath import EARTHED_FARAD, ReturnPath, change_with_return
 from stackdb.touch.verdicts import (
@@ -39,7 +45,12 @@ if TYPE_CHECKING:
 
 RETRANSMITS_PER_M2 = 30.5e-9  # F/m2: a published guard against retransmission, US 2011/0100727 A1, abstract
 FLOATS_BELOW_FARAD = 30e-12  # a device of less capacitance to ground floats, for this warning; common practice
+THICK_LIQUID_M = 1e-3  # a liquid thicker than this is a layer of complex permittivity, still never a series gap
 GLOVE_CAUTION = "Gloves are protective equipment. If the signal is too small, change the panel, not the glove."
+WATER_SIGNS = (
+    "grounded by a bezel or a finger it acts like a finger; floating and wide it lowers a driven mutual node and raises its"
+    " neighbours; a floating drop up to a few pitches wide raises the mutual signal, opposite to a finger"
+)
 SAFETY_CAUTION = "No safety function may rest on one touch; test wet, gloved and floating cases on the real device."
 
 
@@ -169,6 +180,7 @@ class Frame(NamedTuple):
     reference_signal: float | None
     counts: float | None
     noise: float | None
+    blur_m: float
 
 
 def film_answer(film: ResolvedLayer, cover: ResolvedStack, sizes: Sizes) -> FilmAnswer:
@@ -190,8 +202,13 @@ def film_answer(film: ResolvedLayer, cover: ResolvedStack, sizes: Sizes) -> Film
     layers = field_layers(cover.layers)
     sheet_film = Sheet(admittance, 2.0 * pi * film.frequency_hz)
     around = "driven" if sizes.around == "driven" else "grounded"
+    liquid = film.thickness.value > THICK_LIQUID_M
     touch_like = films.apparent_touch(
-        cover=layers, film_under=0, film=sheet_film, pad_diameter_m=sizes.pad_m, around=around
+        cover=layers,
+        film_under=0,
+        film=field_layers([film])[0] if liquid else sheet_film,
+        pad_diameter_m=sizes.pad_m,
+        around=around,
     )
     parameter = films.thin_cover_parameter(
         cover=layers, admittance=admittance, frequency_hz=film.frequency_hz, pad_diameter_m=sizes.pad_m
@@ -218,7 +235,7 @@ def _film_verdicts(film: FilmAnswer, layer: ResolvedLayer, sizes: Sizes) -> Verd
     return Verdicts(
         Verdict(REFUSED, f"{layer.name} is not summed as a dielectric layer"),
         Verdict(REFUSED, f"{smear}; {seen}, {percent(film.remaining_touch or 0.0)} remains"),
-        Verdict(CAUTION, f"layered solution{closed}; in mutual sensing a wide floating film lowers the driven node"),
+        Verdict(CAUTION, f"layered solution{closed}; {WATER_SIGNS}"),
     )
 
 
@@ -303,7 +320,11 @@ def _summed(under: Touched, frame: Frame) -> CaseResult:
         signal_farad=signal,
         counts=counts,
         snr=counts / frame.noise if counts is not None and frame.noise else None,
-        verdicts=Verdicts(_dielectric(gap, gap_ratio, under.film), conduction_verdict(stack), validity),
+        verdicts=Verdicts(
+            _dielectric(gap, gap_ratio, under.film),
+            conduction_verdict(stack, frame.blur_m, asked.sizes.pad_m),
+            validity,
+        ),
         limits=limits if under.case.group == "hand" else (),
     )
 
@@ -410,6 +431,7 @@ def touch(
     device_farad: float | None = None,
     counts: float | None = None,
     noise: float | None = None,
+    blur_m: float | None = None,
 ) -> TouchResult:
     """Answer for every way of touching a stack, against a bare finger on it or on a reference stack.
 
@@ -432,7 +454,7 @@ def touch(
     if bad is not None:
         text = f"{bad.name} is a continuous conductor above the sensor: no touch reaches it"
         raise InputError("conductor-in-path", text, "know its sheet resistance? write rs=", layer=bad.number)
-    frame = _frame(found, reference, body_farad, device_farad, counts, noise)
+    frame = _frame(found, reference, body_farad, device_farad, counts, noise)._replace(blur_m=blur_m or DEFAULT_BLUR_M)
     chosen = _cases(found.catalogue, cases or found.read.cases, found.stack)
     results = tuple(_answer(case, frame) for case in chosen)
     keys = [k for r in results for x in r.case.layers for k in x.sources] + [
@@ -478,4 +500,6 @@ def _frame(
     field, _ = _field(bare, asked.sizes, below, firstorder.shares(bare.layers))
     signal = _returned(field, path) if field else None
     measured = counts if counts is not None else read.counts
-    return Frame(found, below, path, bare, tag, signal, measured, noise if noise is not None else read.noise)
+    return Frame(
+        found, below, path, bare, tag, signal, measured, noise if noise is not None else read.noise, DEFAULT_BLUR_M
+    )

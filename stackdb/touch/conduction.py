@@ -115,7 +115,19 @@ def _carrier(stack: ResolvedStack, layer: ResolvedLayer) -> Verdict:
     return Verdict(REFUSED, text)
 
 
-def _film(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float) -> Verdict | None:
+def let_through(stack: ResolvedStack, layer: ResolvedLayer, smear: Smear, pad_m: float) -> float:
+    """Share [-] of a touch on the cover that comes through a floating film inside it: layered solution, pad diameter [m]."""
+    from stackdb.fields.films import touch_through
+    from stackdb.fields.kernel import FieldLayer, Sheet
+
+    layers = [x for x in stack.layers if x.thickness.value]
+    cover = [FieldLayer(x.thickness.value, x.permittivity.value) for x in layers]
+    above = sum(x.number < layer.number for x in layers)
+    film = Sheet(1.0 / smear.sheet_ohm, 2.0 * pi * layer.frequency_hz)
+    return touch_through(cover=cover, film_under=above, film=film, pad_diameter_m=pad_m).real
+
+
+def _film(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float, pad_m: float | None) -> Verdict | None:
     smear = smear_of(stack, layer)
     if smear is None:
         return None
@@ -123,6 +135,9 @@ def _film(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float) -> Verdict 
         f"layer {layer.number} ({layer.name}) of {format_sheet(smear.sheet_ohm)} smears the touch over"
         f" {format_length(smear.length_m)}, {format_length(blur_m)} allowed"
     )
+    if pad_m is not None and any(x.number < layer.number for x in stack.layers):
+        share = let_through(stack, layer, smear, pad_m)
+        text += f"; floating, it lets {100 * share:.0f} % of a touch through to a pad of {format_length(pad_m)}"
     if smear.length_m > blur_m:
         return Verdict(REFUSED, text)
     return Verdict(CAUTION if smear.length_m > HARMLESS_SHARE * blur_m else OK, text)
@@ -137,13 +152,13 @@ def _unknown(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float) -> Verdi
     return Verdict(OPEN, text)
 
 
-def _judge(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float) -> Verdict | None:
+def _judge(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float, pad_m: float | None) -> Verdict | None:
     if continuous_conductor(layer):
         text = f"layer {layer.number} ({layer.name}) is a continuous conductor above the sensor: it shields the touch"
         return Verdict(REFUSED, text)
     if carries(layer):
         return _carrier(stack, layer)
-    film = _film(stack, layer, blur_m)
+    film = _film(stack, layer, blur_m, pad_m)
     if film is not None:
         return film
     if layer.conducts == "unknown":
@@ -153,9 +168,9 @@ def _judge(stack: ResolvedStack, layer: ResolvedLayer, blur_m: float) -> Verdict
     return None
 
 
-def conduction_verdict(stack: ResolvedStack, blur_m: float = DEFAULT_BLUR_M) -> Verdict:
+def conduction_verdict(stack: ResolvedStack, blur_m: float = DEFAULT_BLUR_M, pad_m: float | None = None) -> Verdict:
     """The worst of the layers' judgements, all of that state in the text; ok when no layer conducts."""
-    found = [v for v in (_judge(stack, layer, blur_m) for layer in stack.layers) if v is not None]
+    found = [v for v in (_judge(stack, layer, blur_m, pad_m) for layer in stack.layers) if v is not None]
     for state in (REFUSED, OPEN, CAUTION, OK):
         texts = [v.text for v in found if v.state == state]
         if texts:

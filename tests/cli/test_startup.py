@@ -44,6 +44,35 @@ def test_nothing_heavy_is_loaded(arguments):
     assert ours <= OURS
 
 
+ALLOWED = {
+    "keyword",
+    "_opcode",
+    "opcode",
+    "dis",
+    "inspect",
+    "token",
+    "tokenize",
+    "linecache",
+    "copy",
+    "ast",
+    "_ast",
+    "__future__",
+}
+
+
+@pytest.mark.parametrize(
+    "arguments",
+    [("show", "soda-lime-glass"), ("compose", "soda-lime-glass 1.8mm / acrylic-oca 150um / pet-film 125um")],
+)
+def test_the_allow_list(arguments):
+    baseline = "import click, sqlite3, sys; from rich.table import Table; from rich.console import Console; print(*sys.modules)"
+    ran = subprocess.run([sys.executable, "-c", baseline], capture_output=True, check=True, text=True)
+    extra = {
+        m for m in loaded(*arguments) - set(ran.stdout.split()) if not m.startswith(("stackdb", "click", "encodings"))
+    }
+    assert extra <= ALLOWED, sorted(extra - ALLOWED)
+
+
 def test_json_loads_no_rich():
     modules = loaded("compose", "soda-lime-glass 1.8mm", "--json")
     assert "rich" not in {m.split(".")[0] for m in modules}

@@ -52,6 +52,20 @@ def test_open_textbook_filled_capacitors():
     assert pytest.approx(3.91, rel=0.002) == 45.0 / 11.5
 
 
+def test_dielectric_over_part_of_the_area_is_parallel():
+    # same source: 45.0 V with kappa 45.0/11.5 over a third of the area becomes 22.8 V (P1-T11)
+    from stackdb.dielectrics.mixing import parallel
+
+    kappa = 45.0 / 11.5
+    assert 45.0 / parallel(1 / 3, kappa, 1.0).real == pytest.approx(22.8, rel=0.003)
+
+
+def test_least_area_of_a_capacitor():
+    # same source: 1.25 nF, permittivity 3.60, 1.60e7 V/m, 5.5 kV need 0.0135 m2 (P1-T18)
+    gap = series_gap([Slab(5.5e3 / 1.6e7, 3.6)])
+    assert 1.25e-9 / gap.capacitance_per_area == pytest.approx(0.0135, rel=0.003)
+
+
 def test_the_widespread_wrong_answer_is_not_ours():
     # the misprinted rule k1 k2 (d1 + d2)/(k1 d1 + k2 d2) gives 2.571 for k 2, d 1 and k 6, d 2; right is 3.6 (clay6.com/qa/75119)
     assert ratio([(2, 1.0), (6, 2.0)]) == pytest.approx(3.6, rel=1e-12)
