@@ -8,8 +8,8 @@ from __future__ import annotations
 
 from cmath import cosh, exp, tanh
 from math import exp as real_exp
-from typing import Any
 from math import pi, sqrt
+from typing import Any
 
 
 def diffusion_length(*, frequency_hz: float, sheet_ohm: float, capacitance_per_area: float) -> float:

@@ -14,7 +14,11 @@ if TYPE_CHECKING:
 
 
 def _row(found: FoundMaterial, room: int) -> list[str]:
-    value, limits = value_and_range(found.permittivity) if found.permittivity else ("-", "conducts")
+    value, limits = (
+        value_and_range(found.permittivity)
+        if found.permittivity
+        else ("-", "no usable figure" if found.material.conducts == "no" else "conducts")
+    )
     also = ", ".join(found.also[:3])
     also = also if len(also) <= room else also[: room - 2] + ".."
     kind = found.material.kind.replace("-", " ")

@@ -173,7 +173,7 @@ def source_list(numbers: dict[str, int], sources: dict[str, Any], columns: int) 
     drawn = []
     for key, number in sorted(numbers.items(), key=lambda item: item[1]):
         s = sources[key]
-        title = f": {printable(s['title'])}" if s["title"] else ""
+        title = f": {printable(s['title'])}" if s["title"] and (s["authors"] or s["publisher"]) else ""
         made = wrapped(f"{checked_words(s)}{title}", columns - 1, f"{INDENT}[{number}] ", " " * 6)
         drawn += [line(m) for m in made[:2]]
     return drawn

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import TYPE_CHECKING, Any, NamedTuple, TypedDict
 
 from stackdb.errors import InputError
 from stackdb.evidence.judge import Conditions
@@ -28,6 +28,22 @@ class Limits(NamedTuple):
     min_signal_farad: float | None = None
 
 
+class Request(TypedDict, total=False):
+    """What every study may be asked beside its stack: the catalogue, conditions, level, source, sizes, limits.
+
+    Frequency [Hz], temperature [degC], humidity [%] and level [-] default to the stack file's, else 100 kHz, 23 degC, 50 %, 0.9.
+    """
+
+    catalogue: Catalogue | None
+    frequency_hz: float | None
+    temperature_c: float | None
+    humidity_pct: float | None
+    level: float | None
+    source: str | None
+    sizes: Sizes
+    limits: Limits
+
+
 class Asked(NamedTuple):
     """Everything that is asked beside the layers."""
 
@@ -48,27 +64,29 @@ def _within(name: str, value: float, low: float, high: float, unit: str) -> floa
     return value
 
 
-def asked_of(
-    stack: Stack,
-    *,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
-    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
-    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
-) -> Asked:
+def asked_of(stack: Stack, request: Request) -> Asked:
     """Merge what the call says with what the stack file says and the defaults; InputError for values out of range."""
     conditions = Conditions(
-        _within("frequency", _first(frequency_hz, stack.frequency_hz, DEFAULT_FREQUENCY_HZ), *FREQUENCY_RANGE_HZ, "Hz"),
         _within(
-            "temperature", _first(temperature_c, stack.temperature_c, DEFAULT_TEMPERATURE_C), *TEMPERATURE_RANGE_C, "C"
+            "frequency",
+            _first(request.get("frequency_hz"), stack.frequency_hz, DEFAULT_FREQUENCY_HZ),
+            *FREQUENCY_RANGE_HZ,
+            "Hz",
         ),
-        _within("humidity", _first(humidity_pct, stack.humidity_pct, DEFAULT_HUMIDITY_PCT), 0.0, 100.0, "%"),
+        _within(
+            "temperature",
+            _first(request.get("temperature_c"), stack.temperature_c, DEFAULT_TEMPERATURE_C),
+            *TEMPERATURE_RANGE_C,
+            "C",
+        ),
+        _within(
+            "humidity", _first(request.get("humidity_pct"), stack.humidity_pct, DEFAULT_HUMIDITY_PCT), 0.0, 100.0, "%"
+        ),
     )
-    chosen_level = _within("level", _first(level, stack.level, DEFAULT_LEVEL), 0.5, 0.999, "")
-    return Asked(conditions, chosen_level, _merged_sizes(stack, sizes), _merged_limits(stack, limits), source)
+    chosen_level = _within("level", _first(request.get("level"), stack.level, DEFAULT_LEVEL), 0.5, 0.999, "")
+    sizes = _merged_sizes(stack, request.get("sizes", Sizes()))
+    limits = _merged_limits(stack, request.get("limits", Limits()))
+    return Asked(conditions, chosen_level, sizes, limits, request.get("source"))
 
 
 def _merged_sizes(stack: Stack, sizes: Sizes) -> Sizes:

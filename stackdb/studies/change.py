@@ -3,21 +3,19 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import TYPE_CHECKING, Any, NamedTuple, Unpack
 
 from stackdb.catalogue.folding import fold
 from stackdb.quantities import format_frequency
 from stackdb.results import Result
-from stackdb.studies.asked import Limits
+from stackdb.studies.asked import Request
 from stackdb.studies.compare import CompareResult, compare
 from stackdb.studies.tolerance import Corners, corners_of
-from stackdb.touch.contact import Sizes
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
     from os import PathLike
 
-    from stackdb.catalogue import Catalogue
     from stackdb.stack.layers import Stack
     from stackdb.stack.resolve import ResolvedLayer
 
@@ -120,30 +118,13 @@ def change_note(
     new: str | PathLike[str] | Stack,
     *,
     offered: Sequence[tuple[str, float]] = (),
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
-    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
-    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
+    **request: Unpack[Request],
 ) -> ChangeResult:
     """Write the change note of a swap: ``old`` and ``new`` as in ``compose``.
 
     ``offered`` are (material, permittivity [-]) pairs from a data sheet in hand, judged against the records.
     """
-    compared = compare(
-        [old, new],
-        catalogue=catalogue,
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        level=level,
-        source=source,
-        sizes=sizes,
-        limits=limits,
-    )
+    compared = compare([old, new], **request)
     drive = compared.conditions.frequency_hz
     rejected = [r for layer in _changed(compared) for r in _far_records(layer, drive)]
     for name, value in offered:

@@ -3,24 +3,23 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import TYPE_CHECKING, Any, NamedTuple, Unpack
 
 from stackdb.errors import InputError
 from stackdb.quantities import Span, format_frequency, format_length
 from stackdb.results import Edition, Limit, Result, Warned, at_least, at_most, sources_dict, span_dict
 from stackdb.stack import firstorder
-from stackdb.studies.asked import Limits
+from stackdb.studies.asked import Request
 from stackdb.studies.compose import Resolved, conditions_dict, edition_of, resolved
 from stackdb.studies.constraints import Claim, claims_on
 from stackdb.touch.conduction import conduction_verdict, forbids_sum
-from stackdb.touch.contact import Field, Sizes, resolve_below, solve_field
+from stackdb.touch.contact import Field, resolve_below, solve_field
 from stackdb.touch.verdicts import REFUSED, Verdict
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
     from os import PathLike
 
-    from stackdb.catalogue import Catalogue
     from stackdb.stack.layers import Stack
     from stackdb.stack.resolve import ResolvedLayer, ResolvedStack
 
@@ -269,35 +268,26 @@ def _other_conditions(found: Sequence[Resolved]) -> list[Warned]:
 
 def compare(
     stacks: Sequence[str | PathLike[str] | Stack],
-    *,
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
-    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
-    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
+    **request: Unpack[Request],
 ) -> CompareResult:
     """Hold stacks against the first, all at the first one's conditions. Raises InputError for fewer than two.
 
-    Conditions as in ``compose``. Material errors that stand in both stacks cancel.
+    ``request`` as in ``compose``. Material errors that stand in both stacks cancel.
     """
     if len(stacks) < 2:
         raise InputError("too-few-stacks", "compare needs two stacks or more", 'quote each: "a 1mm" "b 2mm"')
-    options: dict[str, Any] = {"catalogue": catalogue, "level": level, "source": source, "limits": limits}
-    first = resolved(
-        stacks[0],
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        sizes=sizes,
-        **options,
-    )
+    first = resolved(stacks[0], **request)
     c = first.asked.conditions
-    options |= {"catalogue": first.catalogue, "level": first.asked.level, "sizes": first.asked.sizes}
-    options |= {"frequency_hz": c.frequency_hz, "temperature_c": c.temperature_c, "humidity_pct": c.humidity_pct}
-    found = [first, *(resolved(s, **options) for s in stacks[1:])]
+    common: Request = {
+        **request,
+        "catalogue": first.catalogue,
+        "level": first.asked.level,
+        "sizes": first.asked.sizes,
+        "frequency_hz": c.frequency_hz,
+        "temperature_c": c.temperature_c,
+        "humidity_pct": c.humidity_pct,
+    }
+    found = [first, *(resolved(s, **common) for s in stacks[1:])]
     fields = [_solved(f) for f in found]
     compared = tuple(
         _compared(f, n, first, fields[0], field) for n, (f, field) in enumerate(zip(found, fields, strict=True), 1)

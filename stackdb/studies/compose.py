@@ -3,17 +3,16 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import TYPE_CHECKING, Any, NamedTuple, Unpack
 
 from stackdb.quantities import EPS0, Span
 from stackdb.results import Edition, Limit, Result, Warned, at_least, at_most, sources_dict, span_dict
 from stackdb.stack import firstorder
 from stackdb.stack.resolve import ResolvedLayer, ResolvedStack, resolve
 from stackdb.stack.stackfile import load
-from stackdb.studies.asked import Asked, Limits, asked_of, catalogue_of
+from stackdb.studies.asked import Asked, Request, asked_of, catalogue_of
 from stackdb.studies.constraints import Claim, claims_on
 from stackdb.touch.conduction import DEFAULT_BLUR_M, conduction_verdict, forbids_sum
-from stackdb.touch.contact import Sizes
 from stackdb.touch.verdicts import Verdict, Verdicts, dielectric_verdict, validity_without_sizes
 
 if TYPE_CHECKING:
@@ -229,31 +228,11 @@ class Resolved(NamedTuple):
     stack: ResolvedStack
 
 
-def resolved(
-    stack: str | PathLike[str] | Stack,
-    *,
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
-    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
-    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
-) -> Resolved:
+def resolved(stack: str | PathLike[str] | Stack, **request: Unpack[Request]) -> Resolved:
     """Read, merge and resolve a stack; the way into the house for all studies. InputError says what cannot be used."""
     read = load(stack)
-    asked = asked_of(
-        read,
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        level=level,
-        source=source,
-        sizes=sizes,
-        limits=limits,
-    )
-    opened = catalogue_of(catalogue)
+    asked = asked_of(read, request)
+    opened = catalogue_of(request.get("catalogue"))
     numbers = resolve(opened, read, asked.conditions, level=asked.level, source=asked.source)
     return Resolved(opened, read, asked, numbers)
 
@@ -268,38 +247,24 @@ def ratio_of_gaps(reference: ResolvedStack, stack: ResolvedStack, level: float) 
 def compose(
     stack: str | PathLike[str] | Stack,
     *,
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
     reference: str | PathLike[str] | Stack | None = None,
     as_material: str | None = None,
     blur_m: float | None = None,
-    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
-    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
+    **request: Unpack[Request],
 ) -> ComposeResult:
     """Compose a stack into its gap, effective permittivity and areal capacitance, with ranges and verdicts.
 
-    ``stack`` is text, a path or a Stack; frequency [Hz], temperature [degC], humidity [%] and level [-] default to the
-    stack file's, else 100 kHz, 23 degC, 50 % and 0.9. Raises InputError for what cannot be used, FileError for a file.
+    ``stack`` is text, a path or a Stack; ``request`` the catalogue, ``frequency_hz`` [Hz], ``temperature_c`` [degC],
+    ``humidity_pct`` [%], ``level`` [-], ``source``, ``sizes`` and ``limits``, which default to the stack file's, else to 100 kHz,
+    23 degC, 50 % and 0.9. Raises InputError for what cannot be used, FileError for a file.
     """
-    found = resolved(
-        stack,
-        catalogue=catalogue,
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        level=level,
-        source=source,
-        sizes=sizes,
-        limits=limits,
-    )
+    found = resolved(stack, **request)
     other = reference if reference is not None else found.read.reference
     ratio = None
     if other is not None:
-        against = resolve(found.catalogue, load(other), found.asked.conditions, level=found.asked.level, source=source)
+        against = resolve(
+            found.catalogue, load(other), found.asked.conditions, level=found.asked.level, source=found.asked.source
+        )
         ratio = ratio_of_gaps(against, found.stack, found.asked.level)
     return _composed(found, ratio, other, as_material, blur_m or DEFAULT_BLUR_M)
 

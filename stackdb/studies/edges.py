@@ -3,19 +3,19 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, Unpack
 
 from stackdb.errors import InputError
 from stackdb.quantities import Span
 from stackdb.results import Result
+from stackdb.studies.asked import Request
 from stackdb.studies.compose import Resolved, resolved
 from stackdb.touch.conduction import forbids_sum
-from stackdb.touch.contact import Sizes, resolve_below, solve_field
+from stackdb.touch.contact import resolve_below, solve_field
 
 if TYPE_CHECKING:
     from os import PathLike
 
-    from stackdb.catalogue import Catalogue
     from stackdb.stack.layers import Stack
 
 FINGERS = (0.5, 0.75, 1.0, 1.5, 2.0, 3.0)  # of the pad's diameter
@@ -67,29 +67,14 @@ def _factor(found: Resolved, number: int, thickness_m: float, finger_m: float) -
 def edges(
     stack: str | PathLike[str] | Stack,
     *,
-    sizes: Sizes,
     layer: int = 1,
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
+    **request: Unpack[Request],
 ) -> EdgesResult:
     """Map the edge factor of a stack over its finger's diameter and the thickness of one layer, for a pad among neighbours.
 
-    Conditions as in ``compose``; the sizes need the pad and the neighbours. Raises InputError otherwise.
+    ``request`` as in ``compose``; the sizes need the pad and the neighbours. Raises InputError otherwise.
     """
-    found = resolved(
-        stack,
-        catalogue=catalogue,
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        level=level,
-        source=source,
-        sizes=sizes,
-    )
+    found = resolved(stack, **request)
     pad, around = found.asked.sizes.pad_m, found.asked.sizes.around
     if pad is None or around is None:
         raise InputError("sizes-missing", "the map needs a pad and its neighbours", "add --pad and --around")

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from math import sqrt
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import TYPE_CHECKING, Any, NamedTuple, Unpack
 
 from stackdb.errors import InputError
 from stackdb.evidence.quantiles import two_sided
@@ -13,17 +13,16 @@ from stackdb.results import Edition, Result, Warned, sources_dict, span_dict
 from stackdb.stack.resolve import ResolvedLayer, ResolvedStack, resolve
 from stackdb.stack.series import Slab, series_gap
 from stackdb.stack.stackfile import load
-from stackdb.studies.asked import Asked
+from stackdb.studies.asked import Asked, Request
 from stackdb.studies.compose import Resolved, conditions_dict, edition_of, resolved
 from stackdb.studies.constraints import Claim, claims_on, least_thickness
 from stackdb.touch.conduction import forbids_sum
-from stackdb.touch.contact import Below, Sizes, resolve_below, solve_field
+from stackdb.touch.contact import Below, resolve_below, solve_field
 
 if TYPE_CHECKING:
     from collections.abc import Callable
     from os import PathLike
 
-    from stackdb.catalogue import Catalogue
     from stackdb.stack.layers import Stack
 
 MOST_THICKNESS_M = 0.05
@@ -209,30 +208,15 @@ def size(
     layer: int,
     target: Target,
     solve: str = "thickness",
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
     reference: str | PathLike[str] | Stack | None = None,
-    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
+    **request: Unpack[Request],
 ) -> SizeResult:
     """Solve layer ``layer`` (from 1 at the touched side) for a target, within recorded bounds.
 
-    Conditions as in ``compose``; a ratio refers to ``reference`` by gap; a signal is solved by the field solution and is another
+    ``request`` as in ``compose``; a ratio refers to ``reference`` by gap; a signal is solved by the field solution and is another
     target than a gap. Raises InputError for what cannot be solved at all; an empty range is an answer.
     """
-    found = resolved(
-        stack,
-        catalogue=catalogue,
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        level=level,
-        source=source,
-        sizes=sizes,
-    )
+    found = resolved(stack, **request)
     chosen = _checked(found, layer, solve, target)
     other = reference if reference is not None else found.read.reference
     reference_gap = None

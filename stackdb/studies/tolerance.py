@@ -3,14 +3,14 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import TYPE_CHECKING, Any, NamedTuple, Unpack
 
 from stackdb.errors import InputError
 from stackdb.quantities import EPS0, Span
 from stackdb.results import Limit, Result, Warned, at_least, at_most, sources_dict
 from stackdb.stack import firstorder
 from stackdb.stack.resolve import ResolvedLayer, ResolvedStack, resolve
-from stackdb.studies.asked import Asked, Limits
+from stackdb.studies.asked import Asked, Limits, Request
 from stackdb.studies.compose import conditions_dict, edition_of, resolved
 
 if TYPE_CHECKING:
@@ -198,13 +198,6 @@ def _off(name: str, span: Span, drawn: Drawn) -> list[Warned]:
 def tolerance(
     stack: str | PathLike[str] | Stack,
     *,
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
-    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
     reference: str | PathLike[str] | Stack | None = None,
     samples: int = 100_000,
     seed: int = 1,
@@ -214,10 +207,11 @@ def tolerance(
     hot_c: float = HOT_C,
     wet_pct: float = WET_PCT,
     progress: Callable[[int], None] | None = None,
+    **request: Unpack[Request],
 ) -> ToleranceResult:
     """Corners, contributions and Monte Carlo of a stack, with its yield against the limits set.
 
-    Conditions as in ``compose``; ``samples`` draws with ``seed``; the climate's corners at ``cold_c`` and ``hot_c`` [degC] and
+    ``request`` as in ``compose``; ``samples`` draws with ``seed``; the climate's corners at ``cold_c`` and ``hot_c`` [degC] and
     ``wet_pct`` [%]. Raises InputError when a layer cannot be summed as a dielectric.
     """
     if not 1 <= samples <= MOST_SAMPLES:
@@ -225,16 +219,7 @@ def tolerance(
     from stackdb.studies import montecarlo
     from stackdb.touch.conduction import forbids_sum
 
-    found = resolved(
-        stack,
-        catalogue=catalogue,
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        level=level,
-        source=source,
-        limits=limits,
-    )
+    found = resolved(stack, **request)
     layers, asked = found.stack, found.asked
     bad = next((x for x in layers.layers if forbids_sum(x)), None)
     if bad is not None:

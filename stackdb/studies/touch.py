@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from math import pi
-from typing import TYPE_CHECKING, Any, NamedTuple
+from typing import TYPE_CHECKING, Any, NamedTuple, Unpack
 
 from stackdb.errors import InputError
 from stackdb.quantities import EPS0, Span, format_length
@@ -12,7 +12,7 @@ from stackdb.results import Edition, Limit, Result, Warned, at_least, at_most, s
 from stackdb.stack import firstorder
 from stackdb.stack.resolve import ResolvedLayer, ResolvedStack, resolve
 from stackdb.stack.stackfile import load
-from stackdb.studies.asked import Asked, Limits
+from stackdb.studies.asked import Asked, Request
 from stackdb.studies.compose import Resolved, conditions_dict, edition_of, resolved, verdicts_dict
 from stackdb.touch.cases import BARE, Case, Touched, default_cases, named_case, touched
 from stackdb.touch.conduction import (
@@ -417,14 +417,6 @@ def _warnings(frame: Frame, results: Sequence[CaseResult]) -> list[Warned]:
 def touch(
     stack: str | PathLike[str] | Stack,
     *,
-    catalogue: Catalogue | None = None,
-    frequency_hz: float | None = None,
-    temperature_c: float | None = None,
-    humidity_pct: float | None = None,
-    level: float | None = None,
-    source: str | None = None,
-    sizes: Sizes = Sizes(),  # noqa: B008 - an immutable NamedTuple
-    limits: Limits = Limits(),  # noqa: B008 - an immutable NamedTuple
     cases: Sequence[str] = (),
     reference: str | PathLike[str] | Stack | None = None,
     body_farad: float | None = None,
@@ -432,24 +424,15 @@ def touch(
     counts: float | None = None,
     noise: float | None = None,
     blur_m: float | None = None,
+    **request: Unpack[Request],
 ) -> TouchResult:
     """Answer for every way of touching a stack, against a bare finger on it or on a reference stack.
 
-    Conditions and sizes as in ``compose``; ``cases`` are names or inline stacks, by default all that are named; body and device
+    ``request`` as in ``compose``; ``cases`` are names or inline stacks, by default all that are named; body and device
     capacitance to ground [F], the device earthed by default; counts and noise [-] measured on the reference. Raises InputError for
     what cannot be used; a conductor inside the stack itself is refused.
     """
-    found = resolved(
-        stack,
-        catalogue=catalogue,
-        frequency_hz=frequency_hz,
-        temperature_c=temperature_c,
-        humidity_pct=humidity_pct,
-        level=level,
-        source=source,
-        sizes=sizes,
-        limits=limits,
-    )
+    found = resolved(stack, **request)
     bad = next((x for x in found.stack.layers if continuous_conductor(x)), None)
     if bad is not None:
         text = f"{bad.name} is a continuous conductor above the sensor: no touch reaches it"

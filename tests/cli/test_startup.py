@@ -45,6 +45,8 @@ def test_nothing_heavy_is_loaded(arguments):
 
 
 ALLOWED = {
+    "locale",
+    "_locale",
     "keyword",
     "_opcode",
     "opcode",
