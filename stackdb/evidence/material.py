@@ -57,7 +57,7 @@ def _from_model(catalogue: Catalogue, material: Material, conditions: Conditions
         half = two_sided(level) * spread_of(row.model)
         factor = 2.718281828459045**half
         span = Span(eps.real, max(1.0, eps.real / factor), eps.real * factor)
-        loss = None if sigma is not None else -eps.imag / eps.real
+        loss = None if sigma is not None else max(0.0, -eps.imag / eps.real) + 0.0
         read = row.checked == "read"
         return Evidence(span, loss, sigma, "strong" if read else "fair", why, (row.source,), not read, None)
     return None

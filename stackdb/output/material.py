@@ -131,6 +131,16 @@ def _market(result: ShowResult, columns: int) -> list[Line]:
     return paragraph("On the market", "; ".join(parts), columns - 1) if parts else []
 
 
+def _conducts(result: ShowResult, columns: int) -> list[Line]:
+    """Recorded conductivities and sheet resistances."""
+    parts = []
+    for c in result.conductivities[:4]:
+        limits = f" ({c.low:g} .. {c.high:g})" if c.low is not None and c.high is not None else ""
+        words = f", {printable(c.conditions)}" if c.conditions else ""
+        parts.append(f"{c.value:g}{limits} {c.unit}{words}, {c.checked}")
+    return paragraph("Conducts", "; ".join(parts), columns - 1) if parts else []
+
+
 def _wet(result: ShowResult, columns: int) -> list[Line]:
     m = result.material
     if m.uptake_pct is None:
@@ -189,6 +199,7 @@ def draw_show(result: ShowResult, columns: int) -> list[Line]:
     drawn += [*paragraph("Why", result.evidence.why, columns - 1), BLANK]
     drawn += _by_frequency(result, columns)
     drawn += _records(result, numbers, columns)
-    closing = _disagreements(result, numbers, columns) + _market(result, columns) + _wet(result, columns)
+    closing = _disagreements(result, numbers, columns) + _market(result, columns)
+    closing += _conducts(result, columns) + _wet(result, columns)
     drawn += [*closing, BLANK] if closing else []
     return drawn + source_list(numbers, result.sources, columns)

@@ -15,6 +15,9 @@ if TYPE_CHECKING:
     from stackdb.studies.touch import CaseResult, TouchResult
 
 
+LEAST_BAR = 5
+
+
 def _title(result: TouchResult) -> Line:
     c = result.asked.conditions
     name = " ".join(
@@ -46,6 +49,10 @@ def _row(r: CaseResult, with_counts: bool) -> list[str]:
     ]
 
 
+def _columns(rows: list[list[str]], keep: list[int]) -> list[str]:
+    return aligned([[row[i] for i in keep] for row in rows], "".join("<>>>>>"[i] for i in keep))
+
+
 def _touches(result: TouchResult, columns: int) -> list[Line]:
     with_counts = any(r.counts is not None for r in result.cases)
     rows = [(r, row) for r in result.cases if (row := _row(r, with_counts))]
@@ -60,16 +67,19 @@ def _touches(result: TouchResult, columns: int) -> list[Line]:
         "counts" if with_counts else "",
     ]
     keep = [i for i in range(6) if i < 4 or any(x[i] for _, x in rows)]
-    cells = [[row[i] for i in keep] for row in (head, *(x for _, x in rows))]
-    texts = aligned(cells, "".join("<>>>>>"[i] for i in keep))
+    texts = _columns([head, *(x for _, x in rows)], keep)
+    if max(len(t) for t in texts) + LEAST_BAR + 11 > columns and len(keep) > 4:
+        texts = _columns(
+            [head, *(x for _, x in rows)], [i for i in keep if i != 3]
+        )  # the range gives way to signal and counts
     inner = max(len(t) for t in texts)
-    room = max(6, columns - inner - 11)
+    room = max(0, columns - inner - 11)
     drawn = [line(INDENT, Piece(texts[0], "dim"))]
     for (r, _), text in zip(rows, texts[1:], strict=True):
         missed = [x.name for x in r.limits if not x.met]
         share = min(1.0, r.ratio.value if r.ratio else 0.0)
         tail = Piece(" misses" if missed else "", "bold red")
-        drawn.append(line(INDENT, f"{text:<{inner}}  ", bar(share, room), tail))
+        drawn.append(line(INDENT, f"{text:<{inner}}  ", bar(share, room) if room >= LEAST_BAR else "", tail))
     return drawn
 
 
@@ -86,19 +96,29 @@ def _films(result: TouchResult, columns: int) -> list[Line]:
     return drawn
 
 
-def _matrix(result: TouchResult) -> list[Line]:
+def _matrix(result: TouchResult, columns: int) -> list[Line]:
+    """Hands by surfaces; where the names are too wide, letters stand for the surfaces and are told underneath."""
     hands = list(dict.fromkeys(m.hand for m in result.matrix))
     surfaces = list(dict.fromkeys(m.surface for m in result.matrix))
-    cells = {(m.hand, m.surface): m.text for m in result.matrix}
-    rows = [["", *surfaces], *([h, *(cells[h, s] for s in surfaces)] for h in hands)]
-    texts = aligned(rows, "<" + ">" * len(surfaces))
-    return [line(INDENT, Piece(texts[0], "dim")), *(line(INDENT, t) for t in texts[1:])]
+    cells = {(m.hand, m.surface): m.text.replace(" remains", "") for m in result.matrix}
+    body = [[h, *(cells[h, s] for s in surfaces)] for h in hands]
+    letters = [chr(ord("a") + n) for n in range(len(surfaces))]
+    wide = aligned([["", *surfaces], *body], "<" + ">" * len(surfaces))
+    fits = max(len(t) for t in wide) < columns - 1
+    short = [[row[0], *(c.replace("conducts", "film") for c in row[1:])] for row in body]
+    texts = wide if fits else aligned([["", *letters], *short], "<" + ">" * len(surfaces))
+    drawn = [line(INDENT, Piece(texts[0], "dim")), *(line(INDENT, t) for t in texts[1:])]
+    if not fits:
+        told = ", ".join(f"{a} {s}" for a, s in zip(letters, surfaces, strict=True))
+        told += '; "film" conducts: give --pad for the share of a touch that remains on it'
+        drawn += [BLANK, *(line(Piece(m, "dim")) for m in wrapped(told, columns - 1, INDENT))]
+    return drawn
 
 
 def draw_touch(result: TouchResult, columns: int, *, matrix: bool = False) -> list[Line]:
     """The whole screen, or the matrix of hands and surfaces."""
     drawn = [_title(result), BLANK]
-    drawn += _matrix(result) if matrix else _touches(result, columns) + _films(result, columns)
+    drawn += _matrix(result, columns) if matrix else _touches(result, columns) + _films(result, columns)
     drawn.append(BLANK)
     validity = next((r.verdicts.validity for r in result.cases if r.gap is not None), None)
     if validity is not None:

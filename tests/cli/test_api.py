@@ -45,9 +45,24 @@ def test_every_command_has_a_page_of_help_and_a_topic_explains(stackdb):
     for topic in TOPICS:
         ran = stackdb("explain", topic)
         assert ran.status == 0
-        assert len(ran.out.splitlines()) <= 16
+        assert topic == "codes" or len(ran.out.splitlines()) <= 16
     assert stackdb("explain", "confidense").status == 2
     assert json.loads(stackdb("explain", "gap", "--json").out)["text"]
+
+
+def test_every_code_is_explained():
+    import re
+    from pathlib import Path
+
+    from stackdb.output.explanations import CODES
+
+    package = Path(library.__file__).parent
+    pattern = re.compile(
+        r'(?:InputError|FileError|Warned|refuse|_refuse_at|_refuse)\(\s*(?:\w+, )?"([a-z]+(?:-[a-z]+)*)"'
+    )
+    used = {code for path in package.rglob("*.py") for code in pattern.findall(path.read_text(encoding="utf-8"))}
+    assert used <= set(CODES), sorted(used - set(CODES))
+    assert len(used) > 60
 
 
 def test_verify(stackdb):

@@ -157,6 +157,15 @@ def test_sizes_give_a_signal_and_what_water_leaves(stackdb):
     assert sea["film"]["remaining_touch"] == pytest.approx(1 - sea["film"]["apparent_touch_real"])
 
 
+@pytest.mark.parametrize(
+    "more",
+    [("--matrix",), ("--pad", "8mm", "--finger", "8mm", "--around", "grounded", "--counts", "500", "--noise", "10")],
+)
+def test_wide_tables_keep_to_the_screen(stackdb, more):
+    ran = stackdb("touch", "soda-lime-glass 1.8mm / acrylic-oca 150um", *more)
+    assert all(len(line) <= 80 for line in ran.out.splitlines())
+
+
 def test_a_floating_device_loses_signal(stackdb):
     arguments = [
         "touch",
