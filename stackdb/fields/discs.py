@@ -1,9 +1,11 @@
 """Circular pad and circular finger on a layered cover: the true change of capacitance by a touch.
 
-Spectral-domain Galerkin. The charge of a disc of radius a is a sum of functions whose Hankel transforms are j_2n(ka): each has
-the edge singularity of a thin disc, and all are orthogonal for the homogeneous part of the kernel, which is therefore
-integrated in closed form. Method: T. Itoh (editor), Numerical Techniques for Microwave and Millimeter-Wave Passive Structures
-(1989), spectral domain; disc functions after E. R. Love, Quart. J. Mech. Appl. Math. 2 (1949) 428 (recalled).
+Spectral-domain Galerkin. Each disc's charge is a sum of functions that carry the edge singularity of a thin disc
+(``panels``); the homogeneous part of the kernel is integrated in closed form. Every case comes down to the finger's own
+matrix S, to what the pad at unit potential lets the finger feel, h, and to what it feels while the sensor drives, d:
+the change is h S^-1 d. Method: T. Itoh (editor), Numerical Techniques for Microwave and Millimeter-Wave Passive
+Structures (1989), spectral domain; for two discs after E. R. Love, Quart. J. Mech. Appl. Math. 2 (1949) 428 (both
+recalled).
 """
 
 from __future__ import annotations
@@ -13,22 +15,26 @@ from math import pi
 from typing import TYPE_CHECKING, Any, NamedTuple
 
 import numpy as np
+from scipy.special import j1
 
 from stackdb.errors import InputError
 from stackdb.fields import gap
-from stackdb.fields.kernel import INFINITE, FieldLayer, look, series_gap_limit
-from stackdb.fields.quadrature import Grid, grid
+from stackdb.fields.kernel import INFINITE, FieldLayer
+from stackdb.fields.panels import Abrupt, DiscBasis, basis, breaks, gram
+from stackdb.fields.planes import equal_disc_diameter as equal_disc_diameter
+from stackdb.fields.planes import square_plane_change as square_plane_change
+from stackdb.fields.problem import Far, Kernel, Problem, checked, kernel, own_thickness, real_layers
 from stackdb.quantities import EPS0
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from numpy.typing import NDArray
 
     Array = NDArray[np.float64]
 
-ORDERS = (6, 10, 16, 24, 36, 54, 80, 120)
+ORDERS = (8, 12, 16, 22)
 DEFAULT_TOLERANCE = 1e-5
-DECAY = 11.0  # the rest of the kernel beyond exp(-2 * 11) is below 3e-10 of it
-MOST_REACH = 60_000.0  # panels times radius; a thinner layer is refused
 
 
 class FieldResult(NamedTuple):
@@ -59,273 +65,155 @@ class FieldResult(NamedTuple):
         return dict(self._asdict())
 
 
-class Problem(NamedTuple):
-    """Geometry in real numbers: cover from the electrode up, layers below the plane, radii, neighbours."""
+class Response(NamedTuple):
+    """What is asked of one order [F]; ``ground`` is the change of a pad at unit potential with all else at ground."""
 
-    cover: tuple[FieldLayer, ...]
-    below: tuple[FieldLayer, ...]
-    below_ending: str
-    pad_m: float
-    finger_m: float
-    around: str
-    clearance_m: float
-
-
-class Kernel(NamedTuple):
-    """The kernel at the nodes: admittance at the electrode plane, impedances, transfer, and their limits at large k."""
-
-    grid: Grid
-    admittance: Array
-    admittance_far: float
-    pad: Array
-    pad_far: float
-    finger: Array
-    finger_far: float
-    transfer: Array
-    mutual: Array
+    change: float
+    pad_finger: float
+    finger_total: float
+    untouched: float | None
+    high: float
+    ground: float
 
 
-class Terminals(NamedTuple):
-    """Capacitance matrix [F] of pad (1) and finger (2), everything else at ground, and the pad without the finger."""
-
-    c11: float
-    c12: float
-    c22: float
-    untouched: float
-
-
-def _real(layers: Sequence[FieldLayer]) -> tuple[FieldLayer, ...]:
-    kept = []
-    for x in layers:
-        in_plane = None if x.in_plane is None else complex(x.in_plane).real
-        eps = complex(x.permittivity).real
-        if x.thickness_m > 0.0:
-            kept.append(FieldLayer(x.thickness_m, eps, in_plane))
-    return tuple(kept)
+def _disc(problem: Problem, kern: Kernel, order: int, at_pad: bool) -> DiscBasis:
+    """Panels of pad or finger, graded to its own edge and to the edge opposite."""
+    own, other = (problem.pad_m, problem.finger_m) if at_pad else (problem.finger_m, problem.pad_m)
+    across = sum(x.thickness_m for x in problem.cover)
+    finest = 4.0 / float(kern.grid.k[-1])
+    scale = max(min(across, own_thickness(problem, at_pad)), finest)
+    spots = [Abrupt(own, scale)]
+    rims = [other] if at_pad or not problem.clearance_m else [other, other + problem.clearance_m]
+    spots += [Abrupt(rim, across) for rim in rims if rim < own - 0.1 * scale]
+    return basis(kern.grid, breaks(own, spots), order)
 
 
-def _reach(problem: Problem) -> float:
-    """Wavenumber [1/m] beyond which the kernel is its own limit."""
-    nearest = [problem.cover[0], problem.cover[-1], *problem.below[:1]]
-    thin = min(x.thickness_m * abs(x.stretch) for x in nearest)
-    # what couples pad and finger falls by the whole cover once, what reflects from a layer by its thickness twice
-    whole = sum(x.thickness_m * abs(x.stretch) for x in problem.cover)
-    reach = max(DECAY / thin, 2.0 * DECAY / whole)
-    if reach * max(problem.pad_m, problem.finger_m) > MOST_REACH:
-        raise InputError(
-            "layer-too-thin", f"a layer of {thin * 1e6:.3g} um is too thin against the pad for the field solution"
-        )
-    return reach
+def _finger_matrix(kern: Kernel, far: Far, finger: DiscBasis) -> Array:
+    limit = 1.0 / far.finger
+    return gram(finger, kern.grid.weight * (1.0 / kern.finger - limit), limit, far.finger_rest)
 
 
-def _ending(word: str) -> float:
-    return 1.0 if word == "open" else INFINITE
+def _finger_response(matrix: Array, feels: Array, driven: Array, charges: Array) -> tuple[float, float, float, float]:
+    """Change in the drive state, pad to finger, the finger's total, and the change with all else at ground [F]."""
+    solved = np.linalg.solve(matrix, np.column_stack([driven, charges, feels]))
+    by_pad = feels @ solved
+    return float(by_pad[0]), float(by_pad[1]), float(charges @ solved[:, 1]), float(by_pad[2])
 
 
-def kernel(problem: Problem) -> Kernel:
-    """The kernel of a problem at its quadrature nodes; neighbours set the electrode plane or leave it free."""
-    radius = max(problem.pad_m, problem.finger_m, problem.pad_m + problem.clearance_m)
-    nodes = grid(radius, _reach(problem))
-    k = nodes.k
-    up = look(problem.cover, 1.0, k)
-    down = look(problem.below, _ending(problem.below_ending), k)
-    admittance = np.real(up.admittance + down.admittance)
-    floor = down.admittance if problem.around == "alone" else INFINITE
-    top = look(tuple(reversed(problem.cover)), floor, k)
-    near_up = problem.cover[0].mean.real
-    near_down = problem.below[0].mean.real if problem.below else 1.0
-    transfer = np.real(up.transfer)
-    return Kernel(
-        grid=nodes,
-        admittance=admittance,
-        admittance_far=near_up + near_down,
-        pad=1.0 / admittance,
-        pad_far=1.0 / (near_up + near_down),
-        finger=1.0 / (1.0 + np.real(top.admittance)),
-        finger_far=1.0 / (1.0 + problem.cover[-1].mean.real),
-        transfer=transfer,
-        mutual=transfer / admittance,
-    )
+def _alone(problem: Problem, kern: Kernel, far: Far, order: int) -> Callable[[bool], Response]:
+    """Charges of both discs unknown."""
+    pad, finger = (_disc(problem, kern, order, at_pad=side) for side in (True, False))
+    limit = 1.0 / far.pad
+    p11 = gram(pad, kern.grid.weight * (1.0 / kern.open - limit), limit, far.pad_rest)
+    plane = gram(pad, kern.grid.weight * (1.0 / kern.plane - limit), limit, far.plane_rest)
+    p22 = _finger_matrix(kern, far, finger)
+    p12 = (pad.waves * (kern.grid.weight * kern.transfer / kern.open)) @ finger.waves.T / (2.0 * pi * EPS0)
+
+    def respond(lower: bool) -> Response:
+        a = pad.lower if lower else np.ones_like(pad.lower)
+        b = finger.lower if lower else np.ones_like(finger.lower)
+        q1, q2, cross = pad.charges[a], finger.charges[b], p12[np.ix_(a, b)]
+        solved = np.linalg.solve(p11[np.ix_(a, a)], np.column_stack([q1, cross]))
+        untouched = float(q1 @ solved[:, 0])
+        under = float(q1 @ np.linalg.solve(plane[np.ix_(a, a)], q1))
+        feels = cross.T @ solved[:, 0]
+        matrix = p22[np.ix_(b, b)] - cross.T @ solved[:, 1:]
+        if problem.below_ending == "driven":
+            # the driven plane lifts everything; between it and a grounded cover the free plane stands at up/(up + down)
+            share = problem.down_gap_m / (problem.up_gap_m + problem.down_gap_m)
+            change, mutual, total, ground = _finger_response(matrix, feels, q2, q2)
+            return Response(change, mutual, total, 0.0, under * share, ground)
+        change, mutual, total, ground = _finger_response(matrix, feels, feels, q2)
+        return Response(change, mutual, total, untouched, under - untouched, ground)
+
+    return respond
 
 
-def _gram(bessel: Array, values: Array, far: float, weight: Array, radius: float) -> Array:
-    """Galerkin matrix of a disc: the limit in closed form (orthogonal), the rest by quadrature."""
-    count = bessel.shape[0]
-    matrix = (bessel * (weight * (values - far))) @ bessel.T
-    matrix[np.diag_indices(count)] += far * pi / (2.0 * radius * (4.0 * np.arange(count) + 1.0))
-    return matrix / EPS0
+def _whole_plane(problem: Problem, kern: Kernel, far: Far, order: int) -> Callable[[bool], Response]:
+    """All of the electrode plane at given potentials: the finger's charge is the only unknown."""
+    finger = _disc(problem, kern, order, at_pad=False)
+    p22 = _finger_matrix(kern, far, finger)
+    wave = problem.pad_m * j1(kern.grid.k * problem.pad_m)
+    feels = finger.waves @ (kern.grid.weight * kern.transfer * wave)
+    area = pi * problem.pad_m**2
+    if problem.around == "driven":
+        untouched = EPS0 * area / problem.down_gap_m if problem.below_ending == "ground" else 0.0
+        high = EPS0 * area / problem.up_gap_m
+    else:
+        untouched, high = None, 2.0 * pi * EPS0 * float(kern.grid.weight @ (kern.added * wave**2))
+
+    def respond(lower: bool) -> Response:
+        b = finger.lower if lower else np.ones_like(finger.lower)
+        charges = finger.charges[b]
+        driven = charges if problem.around == "driven" else feels[b]
+        change, mutual, total, ground = _finger_response(p22[np.ix_(b, b)], feels[b], driven, charges)
+        return Response(change, mutual, total, untouched, high, ground)
+
+    return respond
 
 
-def _alone(problem: Problem, kern: Kernel, count: int) -> Terminals:
-    pad, finger = (kern.grid.waves(count, r) for r in (problem.pad_m, problem.finger_m))
-    p11 = _gram(pad, kern.pad, kern.pad_far, kern.grid.weight, problem.pad_m)
-    p22 = _gram(finger, kern.finger, kern.finger_far, kern.grid.weight, problem.finger_m)
-    p12 = (pad * (kern.grid.weight * kern.mutual)) @ finger.T / EPS0
-    whole = np.block([[p11, p12], [p12.T, p22]])
-    right = np.zeros((2 * count, 2))
-    right[0, 0] = right[count, 1] = 1.0
-    charge = 2.0 * pi * np.linalg.solve(whole, right)
-    untouched = 2.0 * pi * np.linalg.solve(p11, right[:count, 0])[0]
-    return Terminals(charge[0, 0], 0.5 * (charge[count, 0] + charge[0, 1]), charge[count, 1], float(untouched))
-
-
-def _touching(problem: Problem, kern: Kernel, count: int) -> Terminals:
-    """All of the electrode plane at given potentials: the finger's charge is the only unknown; c11 is then a change."""
-    from scipy.special import j1
-
-    finger = kern.grid.waves(count, problem.finger_m)
-    matrix = _gram(finger, kern.finger, kern.finger_far, kern.grid.weight, problem.finger_m)
-    pad = problem.pad_m * j1(kern.grid.k * problem.pad_m)
-    reach = finger @ (kern.grid.weight * kern.transfer * pad)
-    right = np.column_stack([reach, np.eye(count, 1)[:, 0]])
-    solved = np.linalg.solve(matrix, right)
-    return Terminals(
-        2.0 * pi * float(reach @ solved[:, 0]),
-        -2.0 * pi * float(reach @ solved[:, 1]),
-        2.0 * pi * float(solved[0, 1]),
-        0.0,
-    )
-
-
-def _with_gap(problem: Problem, kern: Kernel, count: int) -> Terminals:
+def _with_gap(problem: Problem, kern: Kernel, far: Far, order: int) -> Callable[[bool], Response]:
     """Neighbours beyond a clearance: the field across the annular gap is unknown beside the finger's charge."""
-    system = gap.assemble(
-        kern.grid.k, kern.grid.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m
+    inner, width = problem.pad_m, problem.clearance_m
+    finger = _disc(problem, kern, order, at_pad=False)
+    scale = max(
+        min(own_thickness(problem, at_pad=True), own_thickness(problem, at_pad=False)), 4.0 / float(kern.grid.k[-1])
     )
-    finger = kern.grid.waves(count, problem.finger_m)
-    p22 = _gram(finger, kern.finger, kern.finger_far, kern.grid.weight, problem.finger_m)
-    link = (system.waves * (kern.grid.weight * kern.transfer)) @ finger.T
-    return Terminals(*gap.terminals(system, link, p22))
+    terms = gap.basis(kern.grid.k, inner, width, gap.order_for(width, scale) * order // ORDERS[0])
+    p22 = _finger_matrix(kern, far, finger)
+    bare = gap.energy(terms, kern.grid.weight * (kern.open - far.pad), far.pad, far.open_rest, inner, width)
+    under = gap.energy(terms, kern.grid.weight * (kern.plane - far.pad), far.pad, far.high_rest, inner, width)
+    link = (terms.waves * (kern.grid.weight * kern.transfer)) @ finger.waves.T
+    driven = problem.around == "driven"
+    voltage = 0.0 if driven else 1.0
+    # charge density of the plane if it were whole: the neighbours' potential against the planes below and above
+    sign = {"open": 0.0, "ground": 1.0 if driven else 0.0, "driven": 0.0 if driven else -1.0}[problem.below_ending]
+    from_below = sign * EPS0 / problem.down_gap_m
+    from_above = EPS0 / problem.up_gap_m if driven else 0.0
+
+    def respond(lower: bool) -> Response:
+        b = finger.lower if lower else np.ones_like(finger.lower)
+        m = terms.areas.size - terms.areas.size // 5 if lower else terms.areas.size
+        charges, areas, energy, coupling = finger.charges[b], terms.areas[:m], bare[:m, :m], link[:m][:, b]
+        feels = coupling.T @ gap.state(energy, areas, 1.0, 0.0)[1]
+        untouched, drive = gap.state(energy, areas, voltage, from_below)
+        high = gap.state(under[:m, :m], areas, voltage, from_below + from_above)[0] - untouched
+        matrix = p22[np.ix_(b, b)] + coupling[1:].T @ np.linalg.solve(energy[1:, 1:], coupling[1:])
+        felt = coupling.T @ drive + (charges if driven else 0.0)
+        change, mutual, total, ground = _finger_response(matrix, feels, felt, charges)
+        return Response(change, mutual, total, untouched, high, ground)
+
+    return respond
 
 
-def _terminals(problem: Problem, kern: Kernel, count: int) -> Terminals:
+def _method(problem: Problem) -> Callable[[Problem, Kernel, Far, int], Callable[[bool], Response]]:
     if problem.around == "alone":
-        return _alone(problem, kern, count)
-    if problem.clearance_m > 0.0:
-        return _with_gap(problem, kern, count)
-    return _touching(problem, kern, count)
-
-
-def change_by(problem: Problem, found: Terminals) -> float:
-    """Change [F] of the pad's own charge by a finger at ground. Among driven neighbours, or over a driven shield alone,
-    it is the pad's share of the finger's charge.
-    """
-    driven = problem.around == "driven" or (problem.around == "alone" and problem.below_ending == "driven")
-    return -found.c12 if driven else found.c11 - found.untouched
-
-
-def _converged(problem: Problem, kern: Kernel, tolerance: float) -> tuple[Terminals, float]:
-    """Raise the order until the change stands still; the last step is the error estimate."""
-    before = _terminals(problem, kern, ORDERS[0])
-    error = 1.0
-    for count in ORDERS[1:]:
-        found = _terminals(problem, kern, count)
-        error = abs(change_by(problem, found) / change_by(problem, before) - 1.0)
-        before = found
-        if error < tolerance:
-            break
-    return before, error
+        return _alone
+    return _whole_plane if problem.whole_plane else _with_gap
 
 
 def plane_change(problem: Problem) -> float:
     """Change [F] by a grounded plane on the whole cover: the upper bound of any finger with that contact."""
-    from scipy.special import j1
-
-    plate = EPS0 / series_gap_limit(problem.cover).real
-    if problem.around == "driven" and problem.clearance_m == 0.0:
-        return plate * pi * problem.pad_m**2
-    nodes = grid(problem.pad_m + problem.clearance_m, _reach(problem))
-    k, weight = nodes.k, nodes.weight
-    near = np.real(look(problem.cover, INFINITE, k).admittance)
-    away = np.real(look(problem.cover, 1.0, k).admittance)
-    down = np.real(look(problem.below, _ending(problem.below_ending), k).admittance)
-    if problem.around == "grounded" and problem.clearance_m == 0.0:
-        return 2.0 * pi * EPS0 * problem.pad_m**2 * float(weight @ ((near - away) * j1(k * problem.pad_m) ** 2))
-    far = problem.cover[0].mean.real + (problem.below[0].mean.real if problem.below else 1.0)
-    if problem.around == "driven":
-        system = gap.assemble(k, weight, near + down, far, problem.pad_m, problem.clearance_m)
-        return gap.uniform_charge(system, plate)
-    if problem.around == "grounded":
-        selves = [
-            gap.self_capacitance(gap.assemble(k, weight, y + down, far, problem.pad_m, problem.clearance_m))
-            for y in (near, away)
-        ]
-        return selves[0] - selves[1]
-    bessel = nodes.waves(36, problem.pad_m)
-    grams = [_gram(bessel, 1.0 / (y + down), 1.0 / far, weight, problem.pad_m) for y in (near, away)]
-    one = np.eye(36, 1)[:, 0]
-    with_plane, without = (2.0 * pi * float(np.linalg.solve(g, one)[0]) for g in grams)
-    if problem.below_ending == "driven":
-        # The free plane floats between shield and ground; the pad carries what it lacks to the shield's potential.
-        up_gap, down_gap = series_gap_limit(problem.cover).real, series_gap_limit(problem.below).real
-        return with_plane * down_gap / (up_gap + down_gap)
-    return with_plane - without
+    return _method(problem)(problem, *kernel(problem), ORDERS[-2])(False).high
 
 
-def square_plane_change(*, cover: Sequence[FieldLayer], side_m: float, angles: int = 48) -> float:
-    """Change [F] of a square pad among grounded neighbours by a grounded plane on the cover: one integral, exact.
-
-    eps0 int int k [Y1 - Y0] abs(P)^2 d2k/(2 pi)^2 with P the transform of the outline, sinc by sinc; ``side_m`` [m].
-    """
-    layers = tuple(reversed(_real(cover)))
-    reach = max(DECAY / layers[0].thickness_m, 2.0 * DECAY / sum(x.thickness_m for x in layers))
-    nodes = grid(side_m, reach)
-    difference = np.real(look(layers, INFINITE, nodes.k).admittance - look(layers, 1.0, nodes.k).admittance)
-    x, w = np.polynomial.legendre.leggauss(angles)
-    angle = 0.125 * pi * (x + 1.0)  # an eighth of the circle is enough by symmetry
-    half = 0.5 * side_m * nodes.k[:, None]
-    outline = np.sinc(half * np.cos(angle) / pi) * np.sinc(half * np.sin(angle) / pi)
-    mean_square = (outline**2 @ w) * 0.5
-    return EPS0 * side_m**4 / (2.0 * pi) * float(nodes.weight @ (nodes.k**2 * difference * mean_square))
-
-
-def equal_disc_diameter(side_m: float) -> float:
-    """Diameter [m] of the disc of a square pad's area, side [m]: it stands for the square under a finger disc.
-
-    Checked against values of two equal square plates: up to 2 % low for covers to a fifth of the side, 3 % to twice the side.
-    """
-    return float(2.0 * side_m / pi**0.5)
-
-
-def _checked(problem: Problem) -> Problem:
-    if problem.pad_m <= 0.0 or problem.finger_m <= 0.0:
-        raise InputError("out-of-range", "pad and finger need a diameter above 0")
-    if not problem.cover:
-        raise InputError("no-thickness", "the cover has no thickness")
-    if problem.clearance_m < 0.0:
-        raise InputError("out-of-range", "the clearance is below 0")
-    if problem.below_ending not in ("open", "ground", "driven"):
-        raise InputError("word-unknown", f'"{problem.below_ending}" is none of open, ground, driven')
-    if problem.below_ending != "open" and not problem.below:
-        raise InputError("below-empty", "a plane under the electrodes needs a layer between", "add it before the word")
-    if problem.around == "grounded" and problem.clearance_m > 0.0 and problem.below_ending == "driven":
-        raise InputError("not-solved", "grounded neighbours with a clearance over a driven shield are not solved")
-    return problem
-
-
-def _base_charge(problem: Problem) -> float:
-    """Own charge [F] of a pad with all driven at unit potential and no finger: what the ground below holds."""
-    if problem.below_ending != "ground":
-        return 0.0
-    plate = EPS0 / series_gap_limit(problem.below).real
-    if problem.clearance_m == 0.0:
-        return plate * pi * problem.pad_m**2
-    kern = kernel(problem)
-    system = gap.assemble(
-        kern.grid.k, kern.grid.weight, kern.admittance, kern.admittance_far, problem.pad_m, problem.clearance_m
+def _converged(problem: Problem, tolerance: float) -> tuple[Response, float]:
+    """The response and the largest relative step from the order below; raises the order until that is small enough."""
+    kern, far = kernel(problem)
+    method = _method(problem)
+    error = INFINITE
+    for order in ORDERS:
+        respond = method(problem, kern, far, order)
+        found, rough = respond(False), respond(True)
+        steps = (abs(x - y) / abs(x) for x, y in zip(found, rough, strict=True) if x and y is not None)
+        error = max(steps)
+        if error <= tolerance:
+            return found, error
+    raise InputError(
+        "field-not-converged",
+        f"the field solution reaches a relative error of {error:.1g}, not {tolerance:.1g}",
+        "ask for a looser tolerance, or simplify the stack",
     )
-    return gap.uniform_charge(system, plate)
-
-
-def _selves(problem: Problem, found: Terminals, change: float) -> tuple[float | None, float | None]:
-    if problem.around == "grounded" and problem.clearance_m == 0.0:
-        return None, None
-    if problem.around == "driven":
-        base = _base_charge(problem)
-        return base, base + change
-    if problem.around == "alone" and problem.below_ending == "driven":
-        return 0.0, change
-    return found.untouched, found.c11
 
 
 def solve(
@@ -341,42 +229,49 @@ def solve(
 ) -> FieldResult:
     """The field solution for a circular pad [m] under a circular finger contact [m].
 
-    ``cover`` from the touched side down to the electrode, ``below`` from the electrode plane down, ending ``open``, ``ground`` or
-    ``driven``; ``around``: the pad alone, or among ``grounded`` or ``driven`` neighbours that fill the plane beyond the
-    clearance [m]. Raises InputError for what cannot be solved; ``error`` [-] is the last step of the order.
+    ``cover`` from the touched side down to the electrode, ``below`` from the electrode plane down, ending ``open``,
+    ``ground`` or ``driven``; ``around``: the pad alone, or among ``grounded`` or ``driven`` neighbours that fill the
+    plane beyond the clearance [m] (None: 0; of no meaning for a pad alone). Permittivities [-] count with their real
+    part. Raises InputError for what cannot be solved to the relative ``tolerance`` [-]; ``error`` [-] is the last step
+    of the order.
     """
-    problem = _checked(
+    problem = checked(
         Problem(
-            cover=tuple(reversed(_real(cover))),
-            below=_real(below),
+            cover=tuple(reversed(real_layers(cover))),
+            below=real_layers(below),
             below_ending=below_ending,
             pad_m=0.5 * pad_diameter_m,
             finger_m=0.5 * finger_diameter_m,
             around=around,
             clearance_m=0.0 if around == "alone" else (clearance_m or 0.0),
-        )
+        ),
+        tolerance,
     )
-    found, error = _converged(problem, kernel(problem), tolerance)
-    change = change_by(problem, found)
-    untouched, touched = _selves(problem, found, change)
+    found, error = _converged(problem, tolerance)
+    return _result(problem, found, error, clearance_m)
+
+
+def _result(problem: Problem, found: Response, error: float, clearance_m: float | None) -> FieldResult:
+    alone = problem.around == "alone"
+    plate = EPS0 * pi * min(problem.pad_m, problem.finger_m) ** 2 / problem.up_gap_m
     pair = None
-    if around == "alone" and below_ending == "open":
-        pair = (found.c11 * found.c22 - found.c12**2) / (found.c11 + found.c22 + 2.0 * found.c12)
-    plate = EPS0 * pi * min(problem.pad_m, problem.finger_m) ** 2 / series_gap_limit(problem.cover).real
+    if alone and problem.below_ending == "open" and found.untouched is not None:
+        c11, c12, c22 = found.untouched + found.ground, -found.pad_finger, found.finger_total
+        pair = (c11 * c22 - c12**2) / (c11 + c22 + 2.0 * c12)
     return FieldResult(
         model="discs",
-        around=around,
-        clearance_m=None if around == "alone" else clearance_m,
-        below=below_ending,
-        self_untouched_farad=untouched,
-        self_touched_farad=touched,
-        change_farad=change,
-        change_low_farad=change,
-        change_high_farad=plane_change(problem),
-        pad_finger_farad=-found.c12,
-        finger_total_farad=found.c22,
+        around=problem.around,
+        clearance_m=None if alone else clearance_m,
+        below=problem.below_ending,
+        self_untouched_farad=found.untouched,
+        self_touched_farad=None if found.untouched is None else found.untouched + found.change,
+        change_farad=found.change,
+        change_low_farad=found.change,
+        change_high_farad=found.high,
+        pad_finger_farad=found.pad_finger,
+        finger_total_farad=found.finger_total,
         pair_farad=pair,
         parallel_plate_farad=plate,
-        edge_factor=change / plate,
+        edge_factor=found.change / plate,
         error=error,
     )

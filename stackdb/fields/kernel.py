@@ -49,10 +49,10 @@ class Sheet(NamedTuple):
 
 
 def tanh_sech(layer: FieldLayer, k: Array) -> tuple[Array, Array]:
-    """Tanh and sech of the layer's k t, from exp(-kt) alone."""
-    decay = np.exp(-k * (layer.thickness_m * layer.stretch))
-    square = decay * decay
-    return (1.0 - square) / (1.0 + square), 2.0 * decay / (1.0 + square)
+    """Tanh and sech of the layer's k t, from exp(-2kt) alone, true to the last digit also for small kt."""
+    x = k * (layer.thickness_m * layer.stretch)
+    decay, less = np.exp(-x), np.expm1(-2.0 * x)
+    return -less / (2.0 + less), 2.0 * decay / (2.0 + less)
 
 
 def through(layer: FieldLayer, beyond: Array | float, k: Array) -> tuple[Array, Array]:
@@ -89,6 +89,37 @@ def look(layers: Sequence[FieldLayer], ending: Array | float, k: Array) -> Seen:
     if isinstance(seen, float):
         seen = np.full_like(k, seen)
     return Seen(seen, transfer)
+
+
+class TwoPort(NamedTuple):
+    """Self admittances of the two faces and the admittance between them [-], the other face at ground; reciprocal."""
+
+    near: Array
+    far: Array
+    between: Array
+
+
+def two_port(layers: Sequence[FieldLayer], k: Array) -> TwoPort:
+    """Charge on each face of a stack per potential: q1 = near v1 - between v2, q2 = far v2 - between v1.
+
+    The nearest layer first. Every quantity decays or saturates with k [1/m]; q is in units of eps0 k.
+    """
+    port = _layer_port(layers[0], k)
+    for layer in layers[1:]:
+        beyond = _layer_port(layer, k)
+        node = port.far + beyond.near
+        port = TwoPort(
+            port.near - port.between**2 / node,
+            beyond.far - beyond.between**2 / node,
+            port.between * beyond.between / node,
+        )
+    return port
+
+
+def _layer_port(layer: FieldLayer, k: Array) -> TwoPort:
+    t, s = tanh_sech(layer, k)
+    own = layer.mean / t
+    return TwoPort(own, own, own * s)
 
 
 def series_gap_limit(layers: Sequence[FieldLayer]) -> complex:
