@@ -183,7 +183,7 @@ class Frame(NamedTuple):
     blur_m: float
 
 
-def film_answer(film: ResolvedLayer, cover: ResolvedStack, sizes: Sizes) -> FilmAnswer:
+def film_answer(film: ResolvedLayer, cover: ResolvedStack, sizes: Sizes, below: Below) -> FilmAnswer:
     """Smear and apparent touch of a conducting film on the cover; F needs a pad, and is nothing among driven neighbours."""
     sheet = sheet_resistance(film) or float("inf")
     plate = EPS0 / sum(x.air_equivalent_m for x in cover.layers)
@@ -201,7 +201,7 @@ def film_answer(film: ResolvedLayer, cover: ResolvedStack, sizes: Sizes) -> Film
     )
     layers = field_layers(cover.layers)
     sheet_film = Sheet(admittance, 2.0 * pi * film.frequency_hz)
-    around = "driven" if sizes.around == "driven" else "grounded"
+    around = sizes.around or "grounded"
     liquid = film.thickness.value > THICK_LIQUID_M
     touch_like = films.apparent_touch(
         cover=layers,
@@ -209,11 +209,13 @@ def film_answer(film: ResolvedLayer, cover: ResolvedStack, sizes: Sizes) -> Film
         film=field_layers([film])[0] if liquid else sheet_film,
         pad_diameter_m=sizes.pad_m,
         around=around,
+        below=below.layers,
+        below_ending="ground" if below.ending == "driven" else below.ending,
     )
     parameter = films.thin_cover_parameter(
         cover=layers, admittance=admittance, frequency_hz=film.frequency_hz, pad_diameter_m=sizes.pad_m
     )
-    closed = films.unbounded_film(parameter).real if around == "grounded" else 0.0
+    closed = films.unbounded_film(parameter).real if around == "grounded" else None
     return FilmAnswer(touch_like.real, touch_like.imag, closed, 1.0 - touch_like.real, length, sheet)
 
 
@@ -250,7 +252,7 @@ def _with_film(under: Touched, frame: Frame) -> CaseResult:
     film = under.film
     if film is None:
         return _refused(under.case)
-    answer = film_answer(film, cover, frame.found.asked.sizes)
+    answer = film_answer(film, cover, frame.found.asked.sizes, frame.below)
     verdicts = _film_verdicts(answer, film, frame.found.asked.sizes)
     return CaseResult(under.case, None, None, None, None, None, answer, None, None, None, verdicts, ())
 
